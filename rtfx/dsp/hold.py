@@ -1,0 +1,18 @@
+"""Make a signal wait a whole number of samples.
+
+State: a ring of a power of two in the patch's memory; the patch's clock says where it stands.
+"""
+
+from rtfx.native.options import inlined
+
+
+@inlined
+def hold(memory, at, ring, late, place, x):
+    """Return the sample that came *late* calls ago (0: *x* itself); *place* counts the calls."""
+    memory[at + (place & (ring - 1))] = x
+    return memory[at + ((place - late) & (ring - 1))]
+
+
+def ring_for(late):
+    """Return the length of the ring that `hold` needs for *late* samples."""
+    return 1 << int(late).bit_length()
