@@ -238,7 +238,7 @@ class _Writer:
         for block in blocks:
             code = self.of.codes[block.name]
             if block.follows and code.prepare:
-                raise NotImplementedError
+                self.lines.append(f"{indent}{self._prepare(block)}")
             outputs = ", ".join(self._outputs(block))
             call = f"{self._use(code.emerge)}({', '.join(self.arguments[block.name])})"
             self.lines.append(f"{indent}{outputs} = {call}  # {block.name}, what comes out")

@@ -7,7 +7,6 @@ from dataclasses import dataclass, field
 import numpy as np
 
 from rtfx.blocks.kind import Parameter
-from rtfx.compiler.reach import reach
 from rtfx.dsp.glide import TARGET, VALUE, WORDS
 from rtfx.patch.model import Patch
 
@@ -34,13 +33,8 @@ def slots(patch: Patch) -> tuple[Slot, ...]:
     found = [(b, p) for b in patch.blocks for p in b.kind.numbers if not p.fixed]
     found.sort(key=lambda pair: pair[1].taper == "log")
     return tuple(
-        Slot(f"{b.name}.{p.name}", i, p, b.values[p.name], *_bounds(patch, b, p)) for i, (b, p) in enumerate(found)
+        Slot(f"{b.name}.{p.name}", i, p, b.values[p.name], p.low, p.high) for i, (b, p) in enumerate(found)
     )
-
-
-def _bounds(patch, block, parameter):
-    """A move may go as far as the build has counted on: the delay's memory and the region's factor depend on it."""
-    return reach(patch, block, parameter)
 
 
 def parameter_words(slots: tuple[Slot, ...]) -> np.ndarray:

@@ -1,0 +1,30 @@
+"""The callback as machine code, built like a patch so that a change anywhere in what it inlines is seen."""
+
+from __future__ import annotations
+
+from functools import cache
+
+from rtfx.compiler import build
+
+_CALLBACK = """\
+from rtfx.engine.callback import process
+from rtfx.engine.events import drain
+from rtfx.engine.finish import meter
+from rtfx.engine.layout import OFFSET
+from rtfx.engine.words import SIZE
+
+
+def {kernel}(inp, out, frames, time, flags, words):
+    return process(inp, out, int64(frames), flags, words)
+"""
+
+
+@cache
+def callback() -> build.Built:
+    """Return the callback, with PortAudio's signature: (input, output, frames, time, flags, userdata) -> int."""
+    from numba import types
+
+    from rtfx.native.options import f32p, i64p
+
+    signature = types.int32(f32p, f32p, types.ulong, types.voidptr, types.ulong, i64p)
+    return build.compile_at(build.write("from numba import int64\n" + _CALLBACK), signature)
