@@ -1,0 +1,33 @@
+"""Only what lies around the cutoff; both sides fade by 6 dB an octave.
+
+    H(s) = (s/q) / (s² + s/q + 1),   s = jf / cutoff
+
+State: the two integrators of rtfx.dsp.svf.  Delay: none.
+Gain: 1 at the cutoff whatever q; −3 dB at two edges that lie cutoff / q apart.
+Source: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).  See rtfx.dsp.svf.
+"""
+
+from rtfx.blocks.kind import Code, Parameter, kind
+from rtfx.dsp.svf import coefficients, step
+from rtfx.native.options import inlined
+
+
+@inlined
+def tick(x, g, k, share, s1, s2):
+    band, low, s1, s2 = step(x, g, share, s1, s2)
+    return k * band, s1, s2
+
+
+@kind(
+    "bandpass",
+    about="Keeps what lies around the cutoff and takes away what is above and below.",
+    ports=("x",),
+    parameters=(
+        Parameter("cutoff", "Hz", 20.0, 20_000.0, 1_000.0, "log", "the middle of what is kept"),
+        Parameter("q", "", 0.3, 30.0, 0.7071, "log", "higher: a narrower band, just as loud"),
+    ),
+    law="H = (s/q) / (s² + s/q + 1), s = jf/cutoff",
+    source="State-variable filter, bilinear transform: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).",
+)
+def bandpass(setting):
+    return Code(tick=tick, prepare=coefficients, coefficients=3, state={"s1": 0.0, "s2": 0.0})
