@@ -1,10 +1,10 @@
-"""Two-quadrant multiplication: the second signal opens and closes the first, and the first stays in the sound.
+"""Two-quadrant multiplication: one signal opens and closes the other, which stays in the sound.
 
     z = x · max(0, 1 + depth · y)
 
 A tone f against a modulator g of peak 1 gives f as it was, and f+g and f−g at depth/2 each.
-Limits: where depth · y falls below −1 the signal is shut, and the corner there has overtones that no bandwidth
-counts; a modulator within ±1 never gets there.
+Limits: where depth · y falls below −1 the signal is shut, and the corner there makes overtones that the
+bandwidth does not count; a modulator within ±1 never gets there.
 State: none.  Delay: none.
 Source: product-to-sum identity, (1 + m cos β) cos α = cos α + ½ m cos(α+β) + ½ m cos(α−β).
 """
@@ -26,7 +26,7 @@ def tick(x, y, depth):
 
 @kind(
     "amplitude-modulate",
-    about="The second signal moves the loudness of the first: a slow one pulses, a fast one adds sums and differences.",
+    about="One signal moves the other's loudness: a slow one pulses, a fast one adds new tones beside yours.",
     ports=("x", "y"),
     parameters=(Parameter("depth", "", 0.0, 1.0, 1.0, about="0: untouched, 1: all the way to silence"),),
     law="z = x · max(0, 1 + depth · y)",

@@ -4,7 +4,7 @@
 
 A resting input gives exactly 0 in the end: the difference is taken before anything is summed up.
 State: the last input x₁ and the last output y₁.  Delay: none.
-Limits: the gain at the cutoff is −3.01 dB within 0.1 dB (cutoff 100 Hz at 44.1 kHz; closer elsewhere).
+Limits: −3.01 dB at the cutoff and 0 dB above hold within 0.1 dB from 44.1 kHz up.
 Source: first-order DC blocker, common practice.
 """
 

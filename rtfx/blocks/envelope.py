@@ -3,7 +3,7 @@
     e ← e + a (|x| − e),   a = 1 − exp(−1 / (attack · rate)) where |x| > e, else with the release
 
 State: e.  Delay: none; the attack rounds what comes fast.
-Bandwidth: what a one-pole of the shortest attack lets through, 1 / (2π · attack), if the input is not narrower.
+Bandwidth: the cutoff of the shortest attack, 1 / (2π · attack), if the input is not narrower still.
 Limits: beyond that it falls by only 6 dB an octave; a short release ripples at the notes' own pitch.
 Source: peak follower with attack and release, common practice.
 """
@@ -11,14 +11,14 @@ Source: peak follower with attack and release, common practice.
 from math import pi
 
 from rtfx.blocks.kind import Code, Parameter, kind
-from rtfx.dsp.smoothing import one_pole
+from rtfx.dsp.smoothing import share
 from rtfx.native.options import inlined
 
 
 @inlined
 def prepare(attack_s, release_s, rate):
     """Return the shares of the way up and down that are made in a sample."""
-    return one_pole(attack_s, rate), one_pole(release_s, rate)
+    return share(attack_s, rate), share(release_s, rate)
 
 
 @inlined

@@ -24,10 +24,10 @@ def tick(x, g, k, share, s1, s2):
     ports=("x",),
     parameters=(
         Parameter("cutoff", "Hz", 20.0, 20_000.0, 1_000.0, "log", "where the bass begins to fade"),
-        Parameter("q", "", 0.3, 30.0, 0.7071, "log", "0.7: even; higher: a peak at the cutoff"),
+        Parameter("q", "", 0.3, 30.0, 0.7071, "log", "0.7: no peak; higher: a peak at the cutoff"),
     ),
     law="H = s² / (s² + s/q + 1), s = jf/cutoff",
-    source="State-variable filter, bilinear transform: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).",
+    source="State-variable filter: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).",
 )
 def highpass(setting):
     return Code(tick=tick, prepare=coefficients, coefficients=3, state={"s1": 0.0, "s2": 0.0})

@@ -2,8 +2,8 @@
 
     y = (1 − amount) · dry + amount · wet
 
-At 0 the output is dry, at 1 it is wet, both to the last bit.  Two signals that have nothing in common lose 3 dB
-half way; two equal ones lose nothing.
+At 0 the output is dry, at 1 it is wet, both to the last bit.  Half way, two signals that have nothing in
+common are 3 dB down; two equal ones are not.
 State: none.  Delay: none.
 Source: linear crossfade, common practice.
 """

@@ -1,7 +1,8 @@
 """Quiet between the notes: open while you play, shut when only noise is left.
 
     opens where |x| ≥ threshold; shuts when |x| has stayed below threshold − hysteresis for the hold time
-    y = g · x,   g ← g + a (t − g),   t = 1 with the attack where open, 10^(floor/20) with the release where shut
+    y = g · x,   g ← g + a (t − g)
+    open: t = 1, a from the attack;   shut: t = 10^(floor/20), a from the release
 
 Once open for 14 attacks g is exactly 1, and the signal passes to the last bit.
 State: the gain g, and how many samples the gate stays open yet.  Delay: none.  It starts silent.
@@ -11,7 +12,8 @@ Source: gate with hysteresis and hold, common practice.
 
 from rtfx.blocks.kind import Code, Parameter, kind
 from rtfx.dsp.decibel import amplitude
-from rtfx.dsp.smoothing import approach, one_pole
+from rtfx.dsp.settle import settle
+from rtfx.dsp.smoothing import share
 from rtfx.native.options import inlined
 
 
@@ -19,7 +21,8 @@ from rtfx.native.options import inlined
 def prepare(threshold_db, hysteresis_db, attack_s, hold_s, release_s, floor_db, rate):
     """Return the levels that open and that keep open, the hold in samples, the floor, and two glides."""
     opens, keeps = amplitude(threshold_db), amplitude(threshold_db - hysteresis_db)
-    return opens, keeps, hold_s * rate, amplitude(floor_db), one_pole(attack_s, rate), one_pole(release_s, rate)
+    rise, fall = share(attack_s, rate), share(release_s, rate)
+    return opens, keeps, hold_s * rate, amplitude(floor_db), rise, fall
 
 
 @inlined
@@ -28,7 +31,7 @@ def tick(x, opens, keeps, hold, floor, rise, fall, gain, left):
         left = hold
     elif left > 0.0:
         left -= 1.0
-    gain = approach(gain, 1.0, rise) if left > 0.0 else approach(gain, floor, fall)
+    gain = settle(gain, 1.0, rise) if left > 0.0 else settle(gain, floor, fall)
     return x * gain, gain, left
 
 
@@ -38,13 +41,13 @@ def tick(x, opens, keeps, hold, floor, rise, fall, gain, left):
     ports=("x",),
     parameters=(
         Parameter("threshold", "dB", -100.0, 0.0, -60.0, about="peaks above this open it"),
-        Parameter("hysteresis", "dB", 0.0, 20.0, 6.0, about="how far below that a note may fade before it shuts"),
+        Parameter("hysteresis", "dB", 0.0, 20.0, 6.0, about="how far below that a note may fade"),
         Parameter("attack", "s", 0.0001, 0.1, 0.002, "log", "how fast it opens"),
         Parameter("hold", "s", 0.01, 2.0, 0.05, "log", "how long it stays open after the last peak"),
         Parameter("release", "s", 0.005, 5.0, 0.1, "log", "how slowly it shuts"),
         Parameter("floor", "dB", -100.0, 0.0, -80.0, about="how far down the sound is while it is shut"),
     ),
-    law="y = g·x; g glides to 1 from |x| ≥ threshold on, to 10^(floor/20) once |x| < threshold − hysteresis for hold",
+    law="y = g·x; g → 1 where |x| ≥ threshold, → 10^(floor/20) after |x| < threshold − hysteresis for hold",
     source="Gate with hysteresis and hold, common practice.",
     linear=False,
     base_rate_only=True,

@@ -14,7 +14,7 @@ from rtfx.native.options import inlined
 
 @inlined
 def tick(x, g, k, share, s1, s2):
-    band, low, s1, s2 = step(x, g, share, s1, s2)
+    band, _, s1, s2 = step(x, g, share, s1, s2)
     return x - k * band, s1, s2
 
 
@@ -27,7 +27,7 @@ def tick(x, g, k, share, s1, s2):
         Parameter("q", "", 0.3, 30.0, 0.7071, "log", "higher: a narrower gap"),
     ),
     law="H = (s² + 1) / (s² + s/q + 1), s = jf/cutoff",
-    source="State-variable filter, bilinear transform: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).",
+    source="State-variable filter: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory).",
 )
 def notch(setting):
     return Code(tick=tick, prepare=coefficients, coefficients=3, state={"s1": 0.0, "s2": 0.0})

@@ -2,8 +2,8 @@
 
     y = c0 + c1·x + c2·x² + … + c8·x⁸
 
-A tone comes out with harmonics up to the highest power used and none above; only powers that the patch can reach
-count for the bandwidth.  Even powers and c0 add DC: put a `dc-block` behind them.
+A tone comes out with harmonics up to the highest power used and none above; only powers that the patch can
+reach count for the bandwidth.  Even powers and c0 add DC: put a `dc-block` behind them.
 Limits: nothing holds the curve beyond ±1, where high powers grow fast.
 State: none.  Delay: none.
 Source: Horner's rule, W. G. Horner, Phil. Trans. R. Soc., 1819 (from memory).

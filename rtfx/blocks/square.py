@@ -2,8 +2,8 @@
 
     y = x²,   (A cos α)² = A²/2 + A²/2 · cos 2α
 
-Limits: the first half of that is DC, which follows the loudness: put a `dc-block` behind it.  The dynamics double:
-a note 1 dB softer comes out 2 dB softer.
+Limits: the first half of that is DC, which follows the loudness: put a `dc-block` behind it.  The dynamics
+double: a note 1 dB softer comes out 2 dB softer.
 State: none.  Delay: none.
 Source: double-angle identity.
 """

@@ -5,9 +5,9 @@
     high = x − k · band − low,   notch = x − k · band
     s1 ← 2 band − s1,   s2 ← 2 low − s2
 
-It equals the analogue filter of second order under the bilinear transform, with the cutoff in its right place.
+It equals the analogue filter of second order under the bilinear transform, prewarped at the cutoff.
 State: s1 and s2, what the two integrators hold.  Delay: none.
-Limits: the cutoff is held below 0.49 of the rate, where the tangent would run off; from 41 kHz up no cutoff gets there.
+Limits: the cutoff is held below 0.49 of the rate, where the tangent runs off; from 41 kHz up none gets there.
 Source: V. Zavalishin, The Art of VA Filter Design, 2012 (from memory): topology-preserving transform with
 trapezoidal integrators.
 """

@@ -9,7 +9,7 @@ from __future__ import annotations
 import numpy as np
 
 from rtfx.compiler.build import Built
-from rtfx.engine import native
+from rtfx.engine.native import callback, release_store
 from rtfx.engine import words as w
 from rtfx.engine.layout import OFFSET, Shared
 
@@ -46,7 +46,7 @@ class Host:
 
     def __init__(self, shared: Shared, graph: Graph, in_channels: int, out_channels: int) -> None:
         self.shared = shared
-        self.callback = native.callback()
+        self.callback = callback()
         self.words = np.zeros(w.SIZE, np.int64)
         self.scratch = [np.zeros(2 * w.CHUNK), np.zeros(2 * w.CHUNK), np.zeros(w.CHUNK, np.float32)]
         self.words[w.SHARED] = shared.words.ctypes.data
@@ -59,7 +59,6 @@ class Host:
         self.words[w.NOW] = graph.address
         shared.set("GRAPH", graph.number)
         self.renewed = int(shared.get("RENEW"))
-        self._publish = _release_store()
 
     @property
     def userdata(self) -> int:
@@ -87,23 +86,4 @@ class Host:
         if self.waiting and self.words[w.NEXT] == 0 and len(self.graphs) == 1:
             graph = self.waiting.pop()
             self.graphs.append(graph)
-            self._publish(self.userdata, w.NEXT, graph.address)
-
-
-def _release_store():
-    """Return a function that stores a word with release ordering, for use from Python."""
-    import ctypes
-
-    from numba import types
-
-    from rtfx.compiler import build
-    from rtfx.native.options import i64p
-
-    text = (
-        "from rtfx.native.memory import store_release\n\n\n"
-        "def {kernel}(words, index, value):\n    store_release(words, index, value)\n"
-    )
-    built = build.compile_at(build.write(text), types.void(i64p, types.int64, types.int64))
-    call = ctypes.CFUNCTYPE(None, ctypes.c_void_p, ctypes.c_int64, ctypes.c_int64)(built.address)
-    call.built = built
-    return call
+            release_store()(self.userdata, w.NEXT, graph.address)
