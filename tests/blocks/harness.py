@@ -1,8 +1,8 @@
 """Run one kind of block over arrays: natively, or as plain Python, from the same generated loop.
 
 The loop follows the calling convention of `rtfx.blocks.kind`: coefficients from the parameters' values in every
-frame, then `emerge` and `tick`.  Native, it is a C function without exceptions, as in a patch's kernel.  Plain, every
-compiled helper is replaced by the Python function it was made from.
+frame, then `emerge` and `tick`.  Native, it is a C function without exceptions, as in a patch's kernel.  Plain,
+every compiled helper is replaced by the Python function it was made from.
 """
 
 from __future__ import annotations
@@ -10,6 +10,7 @@ from __future__ import annotations
 import ctypes
 from dataclasses import dataclass
 from functools import cache
+from math import floor
 from types import FunctionType
 
 import numpy as np
@@ -21,6 +22,7 @@ from rtfx.blocks.kind import Code, Kind, Setting
 from rtfx.native.options import OPTIONS, f64p
 
 RATE = 48_000.0
+_READ = {int: "floor", float: "float"}  # in numba, int() of a float can raise
 _DOUBLES = ctypes.POINTER(ctypes.c_double)
 _SIGNATURE = types.void(f64p, f64p, types.int64, f64p, f64p, f64p)
 
@@ -80,16 +82,18 @@ def write(kind: Kind, code: Code) -> str:
     results = states if code.emerge else outputs + states
     lines.append(f"{', '.join(results)} = tick({', '.join(ports + rest)})")
     lines += [f"outputs[{i} * frames + n] = {out}" for i, out in enumerate(outputs)]
-    loads = [f"{s} = {type(first).__name__}(state[{i}])" for i, (s, first) in enumerate(code.state.items())]
+    loads = [f"{s} = {_READ[type(first)]}(state[{i}])" for i, (s, first) in enumerate(code.state.items())]
     stores = [f"state[{i}] = float({s})" for i, s in enumerate(states)]
     body = [*loads, "for n in range(frames):", *(f"    {line}" for line in lines), *stores]
-    return "\n".join(["def loop(inputs, outputs, frames, numbers, state, memory):", *(f"    {b}" for b in body)])
+    return "\n".join(
+        ["def loop(inputs, outputs, frames, numbers, state, memory):", *(f"    {b}" for b in body)]
+    )
 
 
 def _made(name: str, treat) -> FunctionType:
     kind = table.find(name)
     code = kind.build(setting(kind))
-    namespace = {n: treat(f) for n in ("prepare", "emerge", "tick") if (f := getattr(code, n)) is not None}
+    namespace = {"floor": floor} | {n: treat(f) for n in ("prepare", "emerge", "tick") if (f := getattr(code, n)) is not None}
     exec(write(kind, code), namespace)
     return namespace["loop"]
 
