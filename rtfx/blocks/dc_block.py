@@ -2,7 +2,7 @@
 
     y = x − x₁ + R · y₁,   R = 1 − 2π · cutoff / rate
 
-A resting input gives exactly 0 in the end: the difference is taken before anything is summed up.
+A resting input dies away and leaves no residue: the difference is taken before anything is summed up.
 State: the last input x₁ and the last output y₁.  Delay: none.
 Limits: −3.01 dB at the cutoff and 0 dB above hold within 0.1 dB from 44.1 kHz up.
 Source: first-order DC blocker, common practice.

@@ -5,7 +5,7 @@
 Between samples a cubic through the four around the place is read; at whole samples the output is the input to
 the last bit.  Less than one sample is not possible: `time` 0 is one sample at the block's own rate.
 State: where the next sample goes, and the ring's length less 1.  Memory: a ring of a power of two.
-Limits: half way between samples the top fades, −1.2 dB at 10 kHz and 48 kHz.
+Limits: half way between samples the top fades: −0.5 dB at 10 kHz, −2.5 dB at 15 kHz (rate 48 kHz).
 Source: Lagrange interpolation, see rtfx.dsp.interpolation.
 """
 

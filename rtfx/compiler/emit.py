@@ -72,6 +72,7 @@ class _Writer:
         self.variable = self._variables()
         for name in ("glide", "longest_glide"):
             self._use_name("rtfx.dsp.glide", name)
+        self._use_name("rtfx.dsp.hold", "whole")
         self.storage.state("clock", 0)
 
     # Names
@@ -120,7 +121,7 @@ class _Writer:
         count = len(self.of.slots)
         linear = sum(not s.log for s in self.of.slots)
         loads = [
-            f"    {name} = {'int' if isinstance(first, int) else 'float'}(state[{i}])"
+            f"    {name} = {'whole' if isinstance(first, int) else 'float'}(state[{i}])"
             for i, (name, first) in enumerate(zip(names, firsts, strict=True))
         ]
         stores = [f"    state[{i}] = float({name})" for i, name in enumerate(names)]

@@ -16,3 +16,9 @@ def hold(memory, at, ring, late, place, x):
 def ring_for(late):
     """Return the length of the ring that `hold` needs for *late* samples."""
     return 1 << int(late).bit_length()
+
+
+@inlined
+def whole(x):
+    """Return *x* as an integer: int() called in a kernel itself would leave numba's error path in it."""
+    return int(x)

@@ -1,8 +1,8 @@
 """Run one kind of block over arrays: natively, or as plain Python, from the same generated loop.
 
-The loop follows the calling convention of `rtfx.blocks.kind`: coefficients from the parameters' values in every
-frame, then `emerge` and `tick`.  Native, it is a C function without exceptions, as in a patch's kernel.  Plain,
-every compiled helper is replaced by the Python function it was made from.
+The loop follows the calling convention of `rtfx.blocks.kind`: coefficients from the parameters' values in
+every frame, then `emerge` and `tick`.  Native, it is a C function without exceptions, as a patch's kernel is.
+Plain, every compiled helper is replaced by the Python function it was made from.
 """
 
 from __future__ import annotations
@@ -22,7 +22,6 @@ from rtfx.blocks.kind import Code, Kind, Setting
 from rtfx.native.options import OPTIONS, f64p
 
 RATE = 48_000.0
-_READ = {int: "floor", float: "float"}  # in numba, int() of a float can raise
 _DOUBLES = ctypes.POINTER(ctypes.c_double)
 _SIGNATURE = types.void(f64p, f64p, types.int64, f64p, f64p, f64p)
 
@@ -51,7 +50,7 @@ def setting(kind: Kind, values: dict | None = None, rate: float = RATE, reach: d
 
 
 def run(name: str, *inputs: np.ndarray, rate: float = RATE, plain: bool = False, reach=None, **values) -> Run:
-    """Run kind *name* over its *inputs* (float64, shape (frames,)); a parameter may be an array over the frames."""
+    """Run kind *name* over its *inputs*, float64 of shape (frames,); parameters may be such arrays too."""
     kind = table.find(name)
     code = kind.build(setting(kind, values, rate, reach))
     signals = np.array(inputs, float)
@@ -68,8 +67,18 @@ def run(name: str, *inputs: np.ndarray, rate: float = RATE, plain: bool = False,
 
 def write(kind: Kind, code: Code) -> str:
     """Return the source of the loop for one block."""
-    count, states = len(kind.numbers), list(code.state)
-    numbers = [f"numbers[{count + 1} * n + {i}]" for i in range(count + 1)]
+    read = {int: "floor", float: "float"}  # in numba, int() of a float can raise
+    loads = [f"    {s} = {read[type(first)]}(state[{i}])" for i, (s, first) in enumerate(code.state.items())]
+    stores = [f"    state[{i}] = float({s})" for i, s in enumerate(code.state)]
+    head = "def loop(inputs, outputs, frames, numbers, state, memory):"
+    frame = [f"        {line}" for line in _frame(kind, code)]
+    return "\n".join([head, *loads, "    for n in range(frames):", *frame, *stores])
+
+
+def _frame(kind: Kind, code: Code) -> list[str]:
+    """Return the lines for one frame."""
+    count, states = len(kind.numbers) + 1, list(code.state)
+    numbers = [f"numbers[{count} * n + {i}]" for i in range(count)]
     coefficients = [f"c{i}" for i in range(code.coefficients)] if code.prepare else []
     ports = [f"inputs[{i} * frames + n]" for i in range(len(kind.ports))]
     outputs = [f"out{i}" for i in range(len(kind.outputs))]
@@ -81,19 +90,14 @@ def write(kind: Kind, code: Code) -> str:
         lines.append(f"{', '.join(outputs)} = emerge({', '.join(rest)})")
     results = states if code.emerge else outputs + states
     lines.append(f"{', '.join(results)} = tick({', '.join(ports + rest)})")
-    lines += [f"outputs[{i} * frames + n] = {out}" for i, out in enumerate(outputs)]
-    loads = [f"{s} = {_READ[type(first)]}(state[{i}])" for i, (s, first) in enumerate(code.state.items())]
-    stores = [f"state[{i}] = float({s})" for i, s in enumerate(states)]
-    body = [*loads, "for n in range(frames):", *(f"    {line}" for line in lines), *stores]
-    return "\n".join(
-        ["def loop(inputs, outputs, frames, numbers, state, memory):", *(f"    {b}" for b in body)]
-    )
+    return lines + [f"outputs[{i} * frames + n] = {out}" for i, out in enumerate(outputs)]
 
 
 def _made(name: str, treat) -> FunctionType:
     kind = table.find(name)
     code = kind.build(setting(kind))
-    namespace = {"floor": floor} | {n: treat(f) for n in ("prepare", "emerge", "tick") if (f := getattr(code, n)) is not None}
+    used = {"prepare": code.prepare, "emerge": code.emerge, "tick": code.tick}
+    namespace = {"floor": floor} | {n: treat(f) for n, f in used.items() if f is not None}
     exec(write(kind, code), namespace)
     return namespace["loop"]
 

@@ -17,7 +17,7 @@ def _r(cutoff_hz, rate=RATE):
     return run("dc-block", np.array([1.0, 0.0]), cutoff=cutoff_hz, rate=rate).out[1] + 1.0
 
 
-def test_dc_goes_to_exactly_nothing():
+def test_dc_dies_away_without_a_residue():
     assert run("dc-block", np.full(3_000_000, 0.7), cutoff=10.0).out[-1] < 1e-300
 
 

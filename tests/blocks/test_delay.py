@@ -77,6 +77,18 @@ def test_band_limited_noise_is_late_within_the_remainder_of_the_cubic(samples, b
     assert np.max(np.abs(error)) < np.sum(2 / size * np.abs(spectrum) * bound * omega**4)
 
 
+@pytest.mark.parametrize(("frequency_hz", "loss_db"), [(10_000.0, 0.53), (15_000.0, 2.53)])
+def test_half_way_between_samples_the_top_fades(frequency_hz, loss_db):
+    """(9 cos ω/2 − cos 3ω/2) / 8 is the gain of the four weights −1, 9, 9, −1 over 16."""
+    half = np.pi * frequency_hz / RATE
+    gain = (9 * np.cos(half) - np.cos(3 * half)) / 8
+    tone = np.cos(2 * half * np.arange(1000))
+    assert _late(2.5, tone)[10:] == pytest.approx(
+        gain * np.cos(2 * half * (np.arange(1000) - 2.5))[10:], abs=1e-12
+    )
+    assert 20 * np.log10(gain) == pytest.approx(-loss_db, abs=0.01)
+
+
 def test_a_moving_time_has_no_step_where_the_four_samples_stop_moving_along():
     omega, n = 0.1, np.arange(5000.0)
     samples = np.linspace(1.0, 4.0, len(n))

@@ -1,4 +1,4 @@
-"""Every kind of block: the same bits as machine code and as plain Python, and nothing of Python in the machine code."""
+"""Every kind of block: machine code that calls no Python and gives the same bits as Python would."""
 
 import re
 
@@ -9,8 +9,8 @@ from rtfx.blocks import table
 from tests.blocks.harness import native_loop, run
 
 KINDS = (
-    "add", "amplitude-modulate", "bandpass", "dc-block", "delay", "envelope", "highpass", "limiter", "lowpass",
-    "mix", "noise-gate", "notch", "pan", "polynomial", "square",
+    "add", "amplitude-modulate", "bandpass", "dc-block", "delay", "envelope", "highpass", "limiter",
+    "lowpass", "mix", "noise-gate", "notch", "pan", "polynomial", "square",
 )  # fmt: skip
 FRAMES = 3000
 

@@ -17,6 +17,10 @@ def _lines(x):
     return lines
 
 
+def _named(coefficients):
+    return {f"c{k}": c for k, c in enumerate(coefficients)}
+
+
 def _only(lines, expected):
     """Compare a few lines and everything else with 0."""
     whole = np.zeros_like(lines)
@@ -28,21 +32,17 @@ def _only(lines, expected):
 def test_polynomial_is_numpys_polynomial():
     rng = np.random.default_rng(0)
     coefficients, x = rng.uniform(-8, 8, 9), rng.uniform(-1, 1, 1000)
-    out = run("polynomial", x, **{f"c{k}": c for k, c in enumerate(coefficients)}).out
+    out = run("polynomial", x, **_named(coefficients)).out
     assert np.max(np.abs(out - Polynomial(coefficients)(x))) < 1e-13
 
 
 @pytest.mark.parametrize("harmonic", range(2, 9))
 def test_chebyshev_polynomial_turns_a_full_cosine_into_one_harmonic(harmonic):
-    """T_k(cos α) = cos kα: definition of the Chebyshev polynomials.  T₇ and T₈ are scaled to fit the range of c."""
+    """T_k(cos α) = cos kα, definition of the Chebyshev polynomials; scaled to fit the parameters' range."""
     powers = chebyshev.cheb2poly(Chebyshev.basis(harmonic).coef)
     scale = min(1.0, 8.0 / np.max(np.abs(powers)))
-    out = run("polynomial", np.cos(3 * PHASE), c1=0.0, **_named(scale * powers)).out
+    out = run("polynomial", np.cos(3 * PHASE), **_named(scale * powers)).out
     assert _only(_lines(out), {3 * harmonic: scale})
-
-
-def _named(powers):
-    return {f"c{k}": c for k, c in enumerate(powers) if k != 1 or c}
 
 
 def test_harmonics_by_prescription():
@@ -74,6 +74,6 @@ def test_amplitude_modulation_keeps_the_tone_and_adds_two_at_half_the_depth(dept
 
 
 def test_at_full_depth_the_side_tones_hold_a_third_of_the_power():
-    """m² / (2 + m²): common knowledge of broadcast engineering."""
+    """m² / (2 + m²), from the three lines (1 + m cos β) cos α has."""
     power = _lines(run("amplitude-modulate", np.cos(440 * PHASE), np.cos(7 * PHASE)).out) ** 2
     assert (power[433] + power[447]) / np.sum(power) == pytest.approx(1 / 3, rel=1e-12)

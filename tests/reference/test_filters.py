@@ -1,4 +1,4 @@
-"""Filters against the outside world: scipy's bilinear transform and Butterworth design, and the analogue formulas."""
+"""Filters against the outside world: scipy's filter design and the analogue formulas."""
 
 import numpy as np
 import pytest
@@ -78,7 +78,7 @@ def test_lowpass_peaks_at_the_cutoff_with_a_gain_of_q():
 
 
 def test_bandpass_edges_lie_cutoff_over_q_apart():
-    """Common practice: q is the centre frequency over the width between the −3 dB edges (low in the band, unwarped)."""
+    """Common practice: q is the centre frequency over the width between the −3 dB edges."""
     cutoff, q = 440.0, 4.0
     response = np.abs(np.fft.rfft(run("bandpass", _impulse(1 << 19), cutoff=cutoff, q=q).out))
     kept = np.flatnonzero(response >= np.sqrt(0.5)) * RATE / (1 << 19)
