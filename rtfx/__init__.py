@@ -18,7 +18,7 @@ _PLACES = {
     "render": "rtfx.compiler.render",
     "Move": "rtfx.compiler.render",
 }
-__all__ = sorted(_PLACES)  # noqa: PLE0605
+__all__ = sorted(_PLACES)
 
 
 def __getattr__(name: str) -> Any:

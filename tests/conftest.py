@@ -21,10 +21,7 @@ def floating_point_mode(own_cache):
 
     from rtfx.compiler import build
 
-    text = (
-        "from rtfx.native.flush import floating_point_mode\n\n\n"
-        "def {kernel}():\n    return floating_point_mode()\n"
-    )
+    text = "from rtfx.native.flush import floating_point_mode\n\n\ndef {kernel}():\n    return floating_point_mode()\n"
     built = build.compile_at(build.write(text), types.int64())
     read = ctypes.CFUNCTYPE(ctypes.c_int64)(built.address)
     read.built = built
@@ -42,7 +39,7 @@ def mode_is_left_alone(floating_point_mode):
     assert floating_point_mode() & _CONTROL_BITS == before
 
 
-@pytest.fixture()
+@pytest.fixture
 def noise():
     """One second of noise at 48 kHz, float32, RMS 0.2."""
     return (0.2 * np.random.default_rng(7).standard_normal(48_000)).astype(np.float32)

@@ -4,7 +4,7 @@
     y[n] = x[n − (L−1)] · mean of the last L of r,   L = lookahead · rate, at least 1
 
 Every r in that mean has seen the peak, so |y| ≤ ceiling, exactly.  While nothing exceeds the ceiling and the
-release is over (14 times its time), y is x to the last bit.  Lookahead 0 turns the gain down at once, with no delay.
+release is over (14 times its time), y is x to the last bit.  Lookahead 0 acts at once, with no delay.
 State: place in the rings, r, and the sum of the last L of r.  Delay: L − 1 samples.
 Gains are whole multiples of 2⁻⁴⁰: their running sum is exact and never drifts.
 Limits: samples are bounded, not the curve between them; a ceiling that glides binds a sample as it comes in.

@@ -1,4 +1,4 @@
-"""Four-quadrant multiplication: every partial f of x against every partial g of y gives f+g and f−g, and neither f nor g.
+"""Four-quadrant multiplication: partials f of x and g of y give f+g and f−g, and neither f nor g.
 
     z = x · y
 

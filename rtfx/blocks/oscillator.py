@@ -49,7 +49,7 @@ def _highest_harmonic(setting, inputs):
 
 @kind(
     "oscillator",
-    about="A tuned carrier: sine, triangle, saw or square, with no aliases. Peak ±1 (square and saw overshoot a little).",
+    about="A tuned carrier: sine, triangle, saw or square, with no aliases. Peak ±1; square and saw overshoot a little.",
     parameters=(
         Choice("wave", ("sine", "triangle", "saw", "square"), "sine", "the waveform"),
         Parameter("pitch", "Hz", 0.05, 12_000.0, 220.0, "log", "a note, a note with cents, or a frequency"),
@@ -62,6 +62,4 @@ def oscillator(setting):
     if setting.choices["wave"] == "sine":
         return Code(tick=tick_sine, prepare=prepare_sine, state={"phase": 0.0})
     tables = wavetable.tables(setting.choices["wave"], setting.reach["pitch"][0])
-    return Code(
-        tick=tick_table, prepare=prepare_table, coefficients=4, state={"phase": 0.0}, memory=tables.ravel()
-    )
+    return Code(tick=tick_table, prepare=prepare_table, coefficients=4, state={"phase": 0.0}, memory=tables.ravel())

@@ -39,7 +39,12 @@ def facts_of(plan) -> dict:
         "rate": plan.rate,
         "quality": plan.quality,
         "order": [
-            {"block": n, "kind": plan.patch.block(n).kind.name, "factor": factor.get(n, 1), "width_hz": plan.width_hz[n]}
+            {
+                "block": n,
+                "kind": plan.patch.block(n).kind.name,
+                "factor": factor.get(n, 1),
+                "width_hz": plan.width_hz[n],
+            }
             for n in plan.order
         ],
         "regions": [

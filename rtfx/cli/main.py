@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import importlib
 import sys
+from typing import Any
 
-import click
 import typer
-from typer.core import TyperGroup
+from typer.core import TyperCommand, TyperGroup
 
 COMMANDS = {
     "play": "Play a patch live: audio in, audio out, status on screen.",
@@ -19,14 +19,14 @@ COMMANDS = {
 
 
 class _Lazy(TyperGroup):
-    def list_commands(self, ctx: click.Context) -> list[str]:
+    def list_commands(self, ctx: Any) -> list[str]:
         return list(COMMANDS)
 
-    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+    def get_command(self, ctx: Any, cmd_name: str) -> Any:
         if cmd_name not in COMMANDS:
             return None
         if ctx.resilient_parsing or not any(cmd_name == a for a in sys.argv):
-            return click.Command(cmd_name, help=COMMANDS[cmd_name])
+            return TyperCommand(cmd_name, help=COMMANDS[cmd_name])
         module = importlib.import_module(f"rtfx.cli.{cmd_name}")
         command = typer.main.get_command(module.app)
         command.name = cmd_name

@@ -89,7 +89,13 @@ def _show(listed: list[dict]) -> None:
     for d in listed:
         marks = [w for w, key in (("input", "input"), ("output", "output")) if chosen.get(key) == d["name"]]
         table.add_row(
-            str(d["index"]), d["name"], d["host"], str(d["in"]), str(d["out"]), f"{d['rate']:g} Hz", ", ".join(marks)
+            str(d["index"]),
+            d["name"],
+            d["host"],
+            str(d["in"]),
+            str(d["out"]),
+            f"{d['rate']:g} Hz",
+            ", ".join(marks),
         )
     console.print(table)
     console.print("Choose with --input and --output, by number or part of a name.")

@@ -17,6 +17,7 @@ from functools import cache
 from importlib import metadata
 from pathlib import Path
 from types import ModuleType
+from typing import Any
 
 import numpy as np
 import platformdirs
@@ -29,7 +30,7 @@ class Built:
     name: str
     address: int
     path: Path
-    keep: object
+    keep: Any
 
 
 def cache_folder() -> Path:
@@ -64,7 +65,7 @@ def name_for(text: str, images: tuple[np.ndarray, ...] = ()) -> str:
 
 
 def write(text: str, images: tuple[np.ndarray, ...] = (), heading: str = "") -> Path:
-    """Write *text* (with "{kernel}" for the function's name) into the cache, at once or not at all; returns its path."""
+    """Write *text* into the cache, at once or not at all, "{kernel}" being its function's name; returns its path."""
     name = name_for(text, images)
     path = cache_folder() / f"{name}.py"
     if not path.exists():

@@ -97,4 +97,3 @@ def plan(patch: Patch, rate: float = 48_000.0, quality: str = "stage") -> Plan:
         patch, rate, quality, schedule.blocks(), widths.regions, widths.width_hz, alignment.delay, found,
         emitted.source, emitted.state, emitted.memory,
     )  # fmt: skip
-

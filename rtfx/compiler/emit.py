@@ -24,7 +24,21 @@ from rtfx.dsp.glide import WORDS
 from rtfx.dsp.hold import ring_for
 from rtfx.patch.model import INPUT, Patch, Placed, Wire
 
-_TAKEN = {"inp", "out", "frames", "p", "state", "memory", "clock", "busy", "n", "j", "guitar", "left", "right"}
+_TAKEN = {
+    "inp",
+    "out",
+    "frames",
+    "p",
+    "state",
+    "memory",
+    "clock",
+    "busy",
+    "n",
+    "j",
+    "guitar",
+    "left",
+    "right",
+}
 BODY, INNER = "        ", "            "
 
 
@@ -180,7 +194,9 @@ class _Writer:
             return value
         signal = self._following(follow.wire, block.name)
         amount = f"{follow.depth!r} * {signal}"
-        moved = f"{self._use_name('rtfx.dsp.glide', 'octaves')}({value}, {amount})" if slot.log else f"{value} + {amount}"
+        moved = (
+            f"{self._use_name('rtfx.dsp.glide', 'octaves')}({value}, {amount})" if slot.log else f"{value} + {amount}"
+        )
         bounded = self._use_name("rtfx.dsp.glide", "bounded")
         return f"{bounded}({moved}, {parameter.low!r}, {parameter.high!r})"
 
@@ -279,7 +295,9 @@ class _Writer:
         self._inner(index, blocks, region)
         for wire, at in leaving.items():
             label = f"{self.signal[wire]}_out"
-            signal = self._wait(self.signal[wire], self.of.alignment.pad.get(wire.block, 0), label, INNER, region.factor)
+            signal = self._wait(
+                self.signal[wire], self.of.alignment.pad.get(wire.block, 0), label, INNER, region.factor
+            )
             self.lines.append(f"{INNER}memory[{at} + j] = {signal}")
         self.signal = outside | {w: t for w, t in self.signal.items() if w.block in region.blocks}
         for wire, at in leaving.items():
@@ -293,7 +311,8 @@ class _Writer:
             if block.follows and self._follows_within(block, region):
                 self.lines.append(f"{INNER}{self._prepare(block)}")
             inputs = [
-                self._arriving(block, port, self.signal[wire], INNER, region.factor) for port, wire in self._wires(block)
+                self._arriving(block, port, self.signal[wire], INNER, region.factor)
+                for port, wire in self._wires(block)
             ]
             self._call(block, inputs, INNER)
         self._take_in(self._loop_breakers(index), INNER, region.factor)
@@ -337,6 +356,4 @@ class _Writer:
     def _filter(self, way: str, stage, at: int, late: int, source: int, target: int) -> None:
         function = self._use_name("rtfx.dsp.halfband", way)
         numbers = (at, stage.period, stage.ring, late, stage.many)
-        self.lines.append(
-            f"{BODY}{function}(memory, {', '.join(map(str, numbers))}, clock, {source}, {target})"
-        )
+        self.lines.append(f"{BODY}{function}(memory, {', '.join(map(str, numbers))}, clock, {source}, {target})")

@@ -32,9 +32,7 @@ def slots(patch: Patch) -> tuple[Slot, ...]:
     """Return the moving parameters of *patch*, those on a linear taper first, each with its index."""
     found = [(b, p) for b in patch.blocks for p in b.kind.numbers if not p.fixed]
     found.sort(key=lambda pair: pair[1].taper == "log")
-    return tuple(
-        Slot(f"{b.name}.{p.name}", i, p, b.values[p.name], p.low, p.high) for i, (b, p) in enumerate(found)
-    )
+    return tuple(Slot(f"{b.name}.{p.name}", i, p, b.values[p.name], p.low, p.high) for i, (b, p) in enumerate(found))
 
 
 def parameter_words(slots: tuple[Slot, ...]) -> np.ndarray:

@@ -7,6 +7,7 @@ A region runs as one unit at the base rate, and its blocks have an order of thei
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 from rtfx.compiler.graph import Graph, stable_order
 from rtfx.compiler.widen import Widths
@@ -33,7 +34,7 @@ def order(patch: Patch, widths: Widths) -> Schedule:
         tuple(stable_order({n: waits[n] & region.blocks for n in graph.names if n in region.blocks}))
         for region in widths.regions
     )
-    unit = {name: name if widths.region_of(name) is None else widths.region_of(name) for name in graph.names}
+    unit: dict[str, Any] = {n: n if (i := widths.region_of(n)) is None else i for n in graph.names}
     units: dict[str | int, set] = {unit[n]: set() for n in graph.names}
     for name in graph.names:
         units[unit[name]] |= {unit[m] for m in waits[name]} - {unit[name]}

@@ -94,7 +94,9 @@ class Instance:
         """Send a parameter on its way to *value*, from the next frame on."""
         slot = self.plan.slot(target)
         if not slot.low <= value <= slot.high:
-            raise ValueError(f"{target} = {value:g} is outside {slot.low:g} to {slot.high:g}, which the patch is built for")
+            raise ValueError(
+                f"{target} = {value:g} is outside {slot.low:g} to {slot.high:g}, which the patch is built for"
+            )
         frames = round(glide_s * self.plan.rate)
         _aim()[1](self.parameters.ctypes.data, WORDS * slot.index, value, frames, int(slot.log))
 

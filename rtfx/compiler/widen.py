@@ -107,7 +107,10 @@ class _Widening:
         return widths
 
     def _factor(self, widths: dict[str, float]) -> int:
-        return max((needed_factor(w, self.rate) for n, w in widths.items() if not self.block[n].kind.linear), default=1)
+        return max(
+            (needed_factor(w, self.rate) for n, w in widths.items() if not self.block[n].kind.linear),
+            default=1,
+        )
 
     def _place_block(self, name: str) -> None:
         alone = self._widths_within({name})

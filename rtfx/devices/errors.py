@@ -1,7 +1,7 @@
 """What can go wrong at the doors to the outside.
 
-    DeviceError           the message says what, and the way out
-      DeviceGone          the device or its server is not there now; it may come back
+DeviceError           the message says what, and the way out
+  DeviceGone          the device or its server is not there now; it may come back
 """
 
 

@@ -14,11 +14,11 @@ import sys
 import threading
 import time
 from collections.abc import Callable
+from contextlib import suppress
 from dataclasses import dataclass
 
 from rtfx.compiler.driver import Plan
 from rtfx.devices.artifact import save
-from rtfx.devices.builtin import NAME
 from rtfx.engine import queues, share
 
 STUCK_S = 0.6
@@ -30,7 +30,7 @@ FADE_S = 0.03
 
 @dataclass(frozen=True)
 class Wish:
-    """The device a player asked for: part of a name or a number each way, or "built-in"; `block` 0 is the device's own."""
+    """The device a player asked for, part of a name or a number each way, or "built-in"; `block` 0: its own."""
 
     input: str | None = None
     output: str | None = None
@@ -101,11 +101,9 @@ class Front:
     def _order(self, **order) -> None:
         assert self.process is not None
         assert self.process.stdin is not None
-        try:
+        with suppress(OSError):  # it may have ended; `watch` will see that and start another
             self.process.stdin.write(json.dumps(order) + "\n")
             self.process.stdin.flush()
-        except OSError:
-            pass  # it has ended; `watch` will see that and start another
 
     # The graph
 
@@ -172,10 +170,8 @@ class Front:
         self.process.wait()
         for pipe in (self.process.stdin, self.process.stdout):
             if pipe is not None:
-                try:
+                with suppress(OSError):  # a write was under way when it ended
                     pipe.close()
-                except OSError:
-                    pass  # a write was under way when it ended
 
     def close(self) -> None:
         """Mute by the ramp, end the sound process and let the memory go."""
@@ -200,8 +196,3 @@ class Front:
         """Silence at once, cut all tails, and stay muted."""
         self.shared.set("MUTE", 1)
         self.shared.set("PANIC", self.shared.get("PANIC") + 1)
-
-
-def is_built_in(name: str | None) -> bool:
-    """Tell whether *name* means the built-in device."""
-    return name == NAME

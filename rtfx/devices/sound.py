@@ -15,6 +15,7 @@ import queue
 import sys
 import threading
 import time
+from typing import Any
 
 from rtfx.devices import artifact
 from rtfx.devices.builtin import NAME, BuiltIn
@@ -24,7 +25,6 @@ from rtfx.engine import share
 from rtfx.engine.host import Host
 
 TEND_S = 0.02
-LOOK_AGAIN_S = 0.25
 MUTED_WITHIN_S = 0.5
 
 
@@ -55,7 +55,8 @@ class Sound:
     def __init__(self, shared) -> None:
         self.shared = shared
         self.orders: queue.Queue = queue.Queue()
-        self.device = self.host = None
+        self.device: Any = None
+        self.host: Any = None
         threading.Thread(target=_read_orders, args=(self.orders,), daemon=True).start()
 
     def run(self) -> None:

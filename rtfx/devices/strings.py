@@ -64,9 +64,7 @@ def loop(pitch_hz, t60_s, rate, averages=1):
     rest = period - averages / 2
     delay = int(np.floor(rest - LEAST_TUNING))
     if delay < 2:
-        raise ValueError(
-            f"pitch = {pitch_hz} Hz is too high for a string at {rate} Hz: lower it, or raise the rate."
-        )
+        raise ValueError(f"pitch = {pitch_hz} Hz is too high for a string at {rate} Hz: lower it, or raise the rate.")
     w, tuning = 2 * np.pi / period, rest - delay
     allpass = np.sin((1 - tuning) * w / 2) / np.sin((1 + tuning) * w / 2)
     return Loop(delay, _gain(pitch_hz, t60_s, w, averages), averages, float(allpass))

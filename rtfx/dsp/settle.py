@@ -2,7 +2,7 @@
 
     y ← y + a (t − y),   and y ← t once less than a millionth is left
 
-A one-pole alone never quite arrives; a gain would then never be exactly 1 again.  The last step is below −120 dB.
+A one-pole alone never quite arrives: a gain would not be exactly 1 again.  The last step is below −120 dB.
 Source: one-pole smoothing, see rtfx.dsp.smoothing.
 """
 
@@ -13,6 +13,6 @@ LEFT_OVER = 1e-6
 
 @inlined
 def settle(value, target, a):
-    """Return *value* moved towards *target* by the share *a* of the way, or *target* if that is near enough."""
+    """Return *value* moved by the share *a* of the way to *target*, or *target* if that is near enough."""
     moved = value + a * (target - value)
     return target if abs(target - moved) < LEFT_OVER else moved

@@ -4,7 +4,6 @@ All of it is exact when it has nothing to do: with the ramp over and the level b
 gave is what the device gets, to the last bit.
 """
 
-from rtfx.engine import words as w
 from rtfx.engine.layout import AUDIO_CHANNELS, AUDIO_FRAMES, OFFSET
 from rtfx.native.memory import as_f32p, load_acquire, store_release, word_at
 from rtfx.native.options import inlined

@@ -9,9 +9,9 @@ from __future__ import annotations
 import numpy as np
 
 from rtfx.compiler.build import Built
-from rtfx.engine.native import callback, release_store
 from rtfx.engine import words as w
 from rtfx.engine.layout import OFFSET, Shared
+from rtfx.engine.native import callback, release_store
 
 
 class Graph:
@@ -48,7 +48,7 @@ class Host:
         self.shared = shared
         self.callback = callback()
         self.words = np.zeros(w.SIZE, np.int64)
-        self.scratch = [np.zeros(2 * w.CHUNK), np.zeros(2 * w.CHUNK), np.zeros(w.CHUNK, np.float32)]
+        self.scratch: list[np.ndarray] = [np.zeros(2 * w.CHUNK), np.zeros(2 * w.CHUNK), np.zeros(w.CHUNK, np.float32)]
         self.words[w.SHARED] = shared.words.ctypes.data
         self.words[w.SCRATCH_A : w.MONO + 1] = [a.ctypes.data for a in self.scratch]
         self.words[w.IN_CHANNELS], self.words[w.OUT_CHANNELS] = in_channels, out_channels

@@ -1,9 +1,8 @@
 """The one block of shared memory: what is in it, where, who writes it and who reads it.
 
 Words are 8 bytes; a field is a whole number of words, integers or doubles.  Everything is addressed by these
-offsets, in Python through `Shared` and in the audio thread as constants.  Written once by the front before the
-sound process starts: RATE, CEILING, FADE_FRAMES.  The three processes and their heartbeats have a place each; the hands process's
-is kept for it.
+offsets, in Python through `Shared` and in the audio thread as constants.  The front, the sound process and the
+hands process have a place each; the last is kept for a process that is still to come.
 
 Ordering: a queue's head is stored with release by its one writer after the entry is complete; its tail with
 release by its one reader after the entry has been read.  Counters are plain words with a single writer.

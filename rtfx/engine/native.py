@@ -49,5 +49,5 @@ def release_store():
 
     built = build.compile_at(build.write(_RELEASE), types.void(i64p, types.int64, types.int64))
     store = ctypes.CFUNCTYPE(None, ctypes.c_void_p, ctypes.c_int64, ctypes.c_int64)(built.address)
-    store.built = built
+    store.built = built  # type: ignore[attr-defined]  # keeps the code alive
     return store

@@ -6,7 +6,11 @@ thread alone.  A graph record is GRAPH_WORDS words: the kernel and its three arr
 
 SHARED = 0  # address of the shared block
 SCRATCH_A, SCRATCH_B, MONO = 1, 2, 3  # addresses: CHUNK stereo doubles twice, CHUNK floats
-NOW, NEXT, OLD = 4, 5, 6  # addresses of graph records: heard, waiting to be faded in (0: none), faded out and free
+NOW, NEXT, OLD = (
+    4,
+    5,
+    6,
+)  # addresses of graph records: heard, waiting to be faded in (0: none), faded out and free
 CLOCK = 8  # two words for the clock
 FADE_LEFT = 10
 PANIC_SEEN = 12

@@ -34,7 +34,7 @@ def read_wire(reader: Reader, found: Any, label: str, where: tuple[str, ...], bl
     tables = reader.content.get("blocks", {})
     sources = [INPUT, *tables]
     if not isinstance(found, str):
-        reader.fault(f"{label} = {found!r}; wanted the name of a block in quotes, or \"{INPUT}\"", *where, block=block)
+        reader.fault(f'{label} = {found!r}; wanted the name of a block in quotes, or "{INPUT}"', *where, block=block)
         return Wire(INPUT)
     source, _, output = found.partition(".")
     if source not in sources:
@@ -52,8 +52,9 @@ def read_wire(reader: Reader, found: Any, label: str, where: tuple[str, ...], bl
 def _outputs(entry: Any) -> tuple[str, ...]:
     """The outputs of the block in *entry*; one, if its kind is not known."""
     name = entry.get("kind") if isinstance(entry, dict) else None
-    known = isinstance(name, str) and name in table.names()
-    return table.find(name).outputs if known else ("out",)
+    if isinstance(name, str) and name in table.names():
+        return table.find(name).outputs
+    return ("out",)
 
 
 def read_block(reader: Reader, name: str, entry: Any, tables: dict[str, Any]) -> Placed | None:

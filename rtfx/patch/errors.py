@@ -1,6 +1,6 @@
 """What can be wrong with a patch file.
 
-    PatchError        all the faults of one file, in the order of its lines
+PatchError        all the faults of one file, in the order of its lines
 """
 
 from __future__ import annotations

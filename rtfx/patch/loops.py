@@ -8,9 +8,10 @@ from rtfx.patch.reader import Reader
 
 
 def loop_faults(reader: Reader, blocks: tuple[Placed, ...]) -> list[Fault]:
-    """Return a fault for each loop without a `delay` (or another kind that breaks loops), naming its blocks in order."""
+    """Return a fault for each loop without a `delay` (or another kind that breaks loops), its blocks in order."""
     feeds = {b.name: _immediate(b) for b in blocks}
-    faults, done = [], set()
+    faults: list[Fault] = []
+    done: set[str] = set()
     for block in blocks:
         loop = _way_back(block.name, feeds)
         if loop and not done & set(loop):

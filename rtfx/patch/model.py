@@ -47,7 +47,7 @@ class Placed:
 class Control:
     """What a hand or a foot moves: `by` names the control, `low` and `high` its ends in the parameter's unit.
 
-    `ladder` lists values the control steps through, in its order.  `low` may be above `high`: the control is then turned round.
+    `ladder` lists values the control steps through, in its order.  With `low` above `high` the control is turned round.
     """
 
     block: str

@@ -28,7 +28,9 @@ class Reader:
         """Note that something is wrong at the key path *where*."""
         self.faults.append(Fault(self.path, line_of(self.lines, *where), block, message))
 
-    def check_keys(self, found: Iterable[str], allowed: Iterable[str], where: tuple, what: str, block: str = "") -> None:
+    def check_keys(
+        self, found: Iterable[str], allowed: Iterable[str], where: tuple, what: str, block: str = ""
+    ) -> None:
         """Note every key that is not allowed."""
         allowed = list(allowed)
         for key in found:

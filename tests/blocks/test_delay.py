@@ -23,8 +23,7 @@ def test_whole_samples_come_out_to_the_last_bit(samples):
 
 def test_whole_milliseconds_come_out_to_the_last_bit():
     exact = [
-        np.array_equal(run("delay", NOISE, time=ms / 1000).out[48 * ms :], NOISE[: -48 * ms])
-        for ms in range(1, 100)
+        np.array_equal(run("delay", NOISE, time=ms / 1000).out[48 * ms :], NOISE[: -48 * ms]) for ms in range(1, 100)
     ]
     assert all(exact)
 
@@ -63,9 +62,7 @@ def test_a_cubic_curve_is_followed_exactly(samples):
     assert _late(samples, cubic(n))[110:] == pytest.approx(cubic(n - samples)[110:], rel=1e-11, abs=1e-12)
 
 
-@pytest.mark.parametrize(
-    ("samples", "bound"), [(1.4, OUTER_BOUND), (2.5, MIDDLE_BOUND), (33.7, MIDDLE_BOUND)]
-)
+@pytest.mark.parametrize(("samples", "bound"), [(1.4, OUTER_BOUND), (2.5, MIDDLE_BOUND), (33.7, MIDDLE_BOUND)])
 def test_band_limited_noise_is_late_within_the_remainder_of_the_cubic(samples, bound):
     size, rng = 4096, np.random.default_rng(2)
     omega = 2 * np.pi * np.arange(size // 2 + 1) / size
@@ -82,10 +79,9 @@ def test_half_way_between_samples_the_top_fades(frequency_hz, loss_db):
     """(9 cos ω/2 − cos 3ω/2) / 8 is the gain of the four weights −1, 9, 9, −1 over 16."""
     half = np.pi * frequency_hz / RATE
     gain = (9 * np.cos(half) - np.cos(3 * half)) / 8
-    tone = np.cos(2 * half * np.arange(1000))
-    assert _late(2.5, tone)[10:] == pytest.approx(
-        gain * np.cos(2 * half * (np.arange(1000) - 2.5))[10:], abs=1e-12
-    )
+    n = np.arange(1000)
+    late = gain * np.cos(2 * half * (n - 2.5))
+    assert _late(2.5, np.cos(2 * half * n))[10:] == pytest.approx(late[10:], abs=1e-12)
     assert 20 * np.log10(gain) == pytest.approx(-loss_db, abs=0.01)
 
 

@@ -44,6 +44,13 @@ def test_a_steady_level_is_brought_to_the_ceiling_and_not_above(level):
     assert 1.0 - 1e-8 < out[-1] <= 1.0
 
 
+def test_a_gain_that_would_be_rounded_up_does_not_exceed_the_ceiling():
+    """These levels need a gain that is a multiple of 2⁻⁴⁰ but for rounding; 239 of them would come out too loud."""
+    ceiling, top = _amplitude(-0.1), int(0.98 * 2**40)
+    x = ceiling / (np.arange(top, top - 100_000, -1) * 2.0**-40)
+    assert np.max(run("limiter", x, ceiling=-0.1, lookahead=0.0).out) <= ceiling
+
+
 @pytest.mark.parametrize("lookahead", LOOKAHEADS)
 def test_below_the_ceiling_every_bit_passes_late_by_the_stated_delay(lookahead):
     kind = table.find("limiter")
@@ -144,9 +151,7 @@ class _Counting:
         self.words[i] = value
 
 
-@pytest.mark.parametrize(
-    "values", [np.linspace(0, 1, 500), np.linspace(1, 0, 500)], ids=["rising", "falling"]
-)
+@pytest.mark.parametrize("values", [np.linspace(0, 1, 500), np.linspace(1, 0, 500)], ids=["rising", "falling"])
 def test_running_minimum_never_needs_more_than_its_few_steps(values):
     length, reads = 48, []
     memory = _Counting(2 * length)

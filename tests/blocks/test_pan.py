@@ -28,6 +28,4 @@ def test_an_end_is_the_signal_itself_and_nothing_on_the_other_side(balance, loud
 
 def test_left_and_right_mirror_each_other_to_the_last_bit():
     balance = np.linspace(-1.0, 1.0, len(X))
-    assert np.array_equal(
-        run("pan", X, balance=balance).outputs, run("pan", X, balance=-balance).outputs[::-1]
-    )
+    assert np.array_equal(run("pan", X, balance=balance).outputs, run("pan", X, balance=-balance).outputs[::-1])

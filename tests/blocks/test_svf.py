@@ -19,9 +19,7 @@ def test_notch_is_what_the_band_leaves():
     assert band + notch == pytest.approx(NOISE, abs=1e-13)
 
 
-@pytest.mark.parametrize(
-    ("name", "gain"), [("lowpass", 1.0), ("highpass", 0.0), ("bandpass", 0.0), ("notch", 1.0)]
-)
+@pytest.mark.parametrize(("name", "gain"), [("lowpass", 1.0), ("highpass", 0.0), ("bandpass", 0.0), ("notch", 1.0)])
 def test_gain_at_dc(name, gain):
     assert run(name, np.ones(20_000)).out[-1] == pytest.approx(gain, abs=1e-13)
 

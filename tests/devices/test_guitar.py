@@ -34,9 +34,7 @@ def _db(x):
 def _level_at(x, frequency_hz, rate=RATE):
     """Return the amplitude at one frequency, dB, under a Hann window."""
     window = np.hanning(len(x))
-    return 20 * np.log10(
-        abs(np.sum(window * x * np.exp(-2j * np.pi * frequency_hz / rate * np.arange(len(x)))))
-    )
+    return 20 * np.log10(abs(np.sum(window * x * np.exp(-2j * np.pi * frequency_hz / rate * np.arange(len(x))))))
 
 
 def _peak_near(x, frequency_hz, rate=RATE):
@@ -156,9 +154,7 @@ def test_chord_is_struck_string_by_string():
 
 
 def test_no_string_is_asked_for_two_notes_at_once():
-    for _, notes in itertools.groupby(
-        sorted(guitar.PHRASE, key=lambda n: (n.string, n.at)), lambda n: n.string
-    ):
+    for _, notes in itertools.groupby(sorted(guitar.PHRASE, key=lambda n: (n.string, n.at)), lambda n: n.string):
         for before, after in itertools.pairwise(notes):
             assert before.at + before.beats <= after.at
 

@@ -44,7 +44,7 @@ class Stand:
         return out
 
 
-@pytest.fixture()
+@pytest.fixture
 def ring():
     return rtfx.plan(text(RING.format(pitch=330)))
 

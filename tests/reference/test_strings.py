@@ -91,9 +91,7 @@ def test_high_partial_of_a_high_string_dies_at_once():
     assert _t60_s(y, 5 * 1318.5102, 12, RATE / 1318.5102) == pytest.approx(0.055, abs=1e-3)
 
 
-@pytest.mark.parametrize(
-    ("pitch_hz", "t60_s"), [(82.40689, 6.0), (110.0, 3.0), (329.6276, 2.0), (1318.5102, 1.0)]
-)
+@pytest.mark.parametrize(("pitch_hz", "t60_s"), [(82.40689, 6.0), (110.0, 3.0), (329.6276, 2.0), (1318.5102, 1.0)])
 def test_fundamental_dies_in_the_time_asked_for(pitch_hz, t60_s):
     # Jaffe & Smith 1983: rho = 10^(-3/(f0 t60))/cos(w0/2).
     y = _pluck(strings.loop(pitch_hz, t60_s, RATE), 1.2)[2400:]
