@@ -49,7 +49,7 @@ def _highest_harmonic(setting, inputs):
 
 @kind(
     "oscillator",
-    about="A tuned carrier: sine, triangle, saw or square, with no aliases. Peak ±1; square and saw overshoot a little.",
+    about="A tuned carrier: sine, triangle, saw or square, without aliases. Peak ±1; square and saw overshoot.",
     parameters=(
         Choice("wave", ("sine", "triangle", "saw", "square"), "sine", "the waveform"),
         Parameter("pitch", "Hz", 0.05, 12_000.0, 220.0, "log", "a note, a note with cents, or a frequency"),
