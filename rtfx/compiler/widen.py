@@ -162,7 +162,17 @@ class _Widening:
         widths = self._widths_within(group, rounds=2)
         self.width |= widths
         if self._factor(widths) > 1:
+            self._refuse_base_rate_only(group)
             self.groups.append(set(group))
+
+    def _refuse_base_rate_only(self, group: frozenset[str]) -> None:
+        for name in sorted(group):
+            kind = self.block[name].kind
+            if kind.base_rate_only:
+                raise ValueError(
+                    f"block '{name}': {kind.name} runs at the base rate only, and cannot stand in a loop with a "
+                    "curve or a product that needs a higher one. Put it outside the loop."
+                )
 
     def _draw_in_sources(self) -> None:
         """Let what makes its own sound run where it is used, if it is used in one region only."""

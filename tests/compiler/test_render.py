@@ -117,3 +117,18 @@ def test_bad_samples_are_refused():
         rtfx.render(one("gain"), np.zeros((2, 3)))
     with pytest.raises(ValueError, match="outside 44100 to 192000"):
         rtfx.plan(one("gain"), rate=8000)
+
+
+def test_a_block_may_be_called_like_a_helper(noise):
+    renamed = text(RING.format(pitch=330).replace("tone", "hold").replace("product", "glide"))
+    assert np.array_equal(rtfx.render(renamed, noise[:480]), rtfx.render(text(RING.format(pitch=330)), noise[:480]))
+
+
+def test_a_limiter_in_a_loop_that_needs_a_higher_rate_is_refused():
+    body = (
+        '[blocks.sum]\nkind = "add"\nx = "input"\ny = "back"\n[blocks.shape]\nkind = "clip"\nx = "sum"\n'
+        '[blocks.safe]\nkind = "limiter"\nx = "shape"\n[blocks.back]\nkind = "delay"\nx = "safe"\n'
+        '[output]\nfrom = "sum"\n'
+    )
+    with pytest.raises(ValueError, match="'safe': limiter runs at the base rate only"):
+        rtfx.plan(text(body))
