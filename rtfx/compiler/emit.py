@@ -24,10 +24,8 @@ from rtfx.dsp.glide import WORDS
 from rtfx.dsp.hold import ring_for
 from rtfx.patch.model import INPUT, Patch, Placed, Wire
 
-_TAKEN = set(
-    "inp out frames p state memory clock busy n j guitar left right range float "
-    "glide longest_glide bounded octaves hold whole up down".split()
-)
+_TAKEN = {"inp", "out", "frames", "p", "state", "memory", "clock", "busy", "n", "j", "guitar", "left", "right"}
+_TAKEN |= {"glide", "longest_glide", "bounded", "octaves", "hold", "whole", "up", "down", "range", "float"}
 BODY, INNER = "        ", "            "
 
 

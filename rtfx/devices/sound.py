@@ -26,6 +26,7 @@ from rtfx.engine.host import Host
 
 TEND_S = 0.02
 MUTED_WITHIN_S = 0.5
+GOODBYE_S = 0.5
 
 
 def say(**facts) -> None:
@@ -106,6 +107,14 @@ class Sound:
         until = time.monotonic() + MUTED_WITHIN_S
         while self.host is not None and self.shared.get("GAIN") > 0 and time.monotonic() < until:
             time.sleep(0.01)
+        self._leave()
+
+    def _leave(self) -> None:
+        """Say goodbye to the device, but do not wait long for it: a dead server never answers."""
+        if self.host is not None and self.device.active:
+            goodbye = threading.Thread(target=self.device.stop, daemon=True)
+            goodbye.start()
+            goodbye.join(GOODBYE_S)
         os._exit(0)
 
     def do_stop(self, order: dict) -> None:
