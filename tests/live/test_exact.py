@@ -14,7 +14,7 @@ PRESET = Path(__file__).parents[2] / "presets" / "octave-over.toml"
 SETTLE = 12_000  # frames of silence first: the ramp is over and the graph has heard nothing but zeros
 
 
-@pytest.fixture()
+@pytest.fixture
 def feed():
     return (0.2 * np.random.default_rng(3).standard_normal(96_000)).astype(np.float32)
 

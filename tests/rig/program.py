@@ -52,7 +52,11 @@ class Program:
 
     def __exit__(self, *_):
         if self.process.poll() is None:
+            self.process.terminate()
+        try:
+            self.process.wait(5)
+        except subprocess.TimeoutExpired:
             self.process.kill()
-        self.process.wait()
+            self.process.wait()
         self.process.stdout.close()
         self.process.stderr.close()
