@@ -1,7 +1,7 @@
 """The tuned carrier: sine, triangle, saw or square, free of aliases.
 
     sine: y = sin 2πφ,  φ ← φ + pitch/rate (mod 1)
-    triangle, saw, square: their Fourier series up to 20 kHz, read from tables
+    triangle, saw, square: their Fourier series, whole up to 12.6 kHz and faded out by 20 kHz, read from tables
 
 State: the phase, in cycles.  The phase wraps by subtraction: it stays within 1e-9 cycle for hours.
 Source: Fourier series of the waveforms; band-limited wavetables as in D. C. Massie, "Wavetable Sampling
@@ -54,7 +54,7 @@ def _highest_harmonic(setting, inputs):
         Choice("wave", ("sine", "triangle", "saw", "square"), "sine", "the waveform"),
         Parameter("pitch", "Hz", 0.05, 12_000.0, 220.0, "log", "a note, a note with cents, or a frequency"),
     ),
-    law="sine: sin 2πφ, φ advancing by pitch/rate; the others: their Fourier series up to 20 kHz",
+    law="sine: sin 2πφ, φ advancing by pitch/rate; the others: their Fourier series, whole up to 12.6 kHz, faded out by 20 kHz",
     source="Fourier series; band-limited wavetables (D. C. Massie, Wavetable Sampling Synthesis, 1998, from memory).",
     bandwidth=_highest_harmonic,
 )

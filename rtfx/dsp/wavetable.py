@@ -2,6 +2,7 @@
 
 Row r holds the harmonics up to 2^(r/3).  A pitch reads the two highest rows that stay below the limit and blends
 them, so that a gliding pitch never jumps from one row to the next.
+Harmonics are whole up to 12.6 kHz and fade out between there and 20 kHz.
 Accuracy: cubic interpolation in 4096 points leaves errors 96 dB or more below full scale.
 Source: Fourier series of the waveforms; 4-point Lagrange interpolation.
 """
