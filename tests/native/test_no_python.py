@@ -1,6 +1,7 @@
 """The law of the audio thread: no Python, no allocation, no error path in any code it runs."""
 
 import re
+import sys
 from pathlib import Path
 
 import pytest
@@ -18,6 +19,8 @@ PRESETS = sorted((Path(__file__).parents[2] / "presets").glob("*.toml"))
 def fresh_cache(tmp_path, monkeypatch):
     """Compile anew: numba does not show the code that it loads from its cache."""
     monkeypatch.setenv("RTFX_CACHE", str(tmp_path))
+    for name in [n for n in sys.modules if n.startswith("rtfx_")]:
+        monkeypatch.delitem(sys.modules, name)
 
 
 def called(built):
