@@ -54,7 +54,7 @@ def _highest_harmonic(setting, inputs):
         Choice("wave", ("sine", "triangle", "saw", "square"), "sine", "the waveform"),
         Parameter("pitch", "Hz", 0.05, 12_000.0, 220.0, "log", "a note, a note with cents, or a frequency"),
     ),
-    law="sine: sin 2πφ, φ advancing by pitch/rate; the others: their Fourier series, whole up to 12.6 kHz, faded out by 20 kHz",
+    law="sine: sin 2πφ, φ advancing by pitch/rate; the others: Fourier series to 12.6 kHz, faded out by 20 kHz",
     source="Fourier series; band-limited wavetables (D. C. Massie, Wavetable Sampling Synthesis, 1998, from memory).",
     bandwidth=_highest_harmonic,
 )
