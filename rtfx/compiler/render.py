@@ -82,13 +82,16 @@ class Instance:
         self.parameters = plan.parameters()
         self.state, self.memory = plan.state.copy(), plan.memory.copy()
         self._drive = _driver()[1]
+        self._words = self.words.ctypes.data
+        self._own = tuple(a.ctypes.data for a in (self.parameters, self.state, self.memory))
 
     def run(self, samples: np.ndarray, out: np.ndarray) -> None:
         """Run over *samples* (float32, contiguous, shape (frames,)) into *out* (float64, shape (frames, 2))."""
-        self._drive(
-            self.words.ctypes.data, samples.ctypes.data, out.ctypes.data, len(samples),
-            self.parameters.ctypes.data, self.state.ctypes.data, self.memory.ctypes.data,
-        )  # fmt: skip
+        self.run_at(samples.ctypes.data, out.ctypes.data, len(samples))
+
+    def run_at(self, samples: int, out: int, frames: int) -> None:
+        """Do the same with the addresses of the two arrays."""
+        self._drive(self._words, samples, out, frames, *self._own)
 
     def move(self, target: str, value: float, glide_s: float = GLIDE_S) -> None:
         """Send a parameter on its way to *value*, from the next frame on."""

@@ -18,15 +18,16 @@ from rtfx.dsp.halfband_taps import TAPS
 
 RATE, BLOCK, ROUNDS, SECONDS = 48_000, 64, 7, 1
 PITCH, DRIVE_DB, AMOUNT, THIN_HZ, SOFT_HZ, Q = 330.0, 24.0, 0.7, 120.0, 5000.0, 0.7071067811865476
+WAYS = ("native", "c", "numpy")
 HEAD = 'name = "b"\nabout = "b"\n'
 TONE = f'[blocks.tone]\nkind = "oscillator"\npitch = {PITCH}\n'
 SHAPE = f'[blocks.shape]\nkind = "clip"\nx = "{{x}}"\ndrive = {DRIVE_DB}\n'
 PRODUCT = '[blocks.product]\nkind = "multiply"\nx = "{x}"\ny = "tone"\n'
 SIX = (
-    f'[blocks.thin]\nkind = "highpass"\nx = "input"\ncutoff = {THIN_HZ}\n' + SHAPE.format(x="thin") + TONE
+    f'[blocks.thin]\nkind = "highpass"\nx = "input"\ncutoff = {THIN_HZ}\nq = {Q}\n' + SHAPE.format(x="thin") + TONE
     + PRODUCT.format(x="shape")
     + f'[blocks.blend]\nkind = "mix"\ndry = "input"\nwet = "product"\namount = {AMOUNT}\n'
-    + f'[blocks.soft]\nkind = "lowpass"\nx = "blend"\ncutoff = {SOFT_HZ}\n[output]\nfrom = "soft"\n'
+    + f'[blocks.soft]\nkind = "lowpass"\nx = "blend"\ncutoff = {SOFT_HZ}\nq = {Q}\n[output]\nfrom = "soft"\n'
 )  # fmt: skip
 GRAPHS = {
     "balanced": TONE + PRODUCT.format(x="input") + '[output]\nfrom = "product"\n',
@@ -61,7 +62,7 @@ def compile_c(folder):
 
 
 def runners(name, library):
-    """Return {way: function(block of float32) -> left channel} for one graph, each with a state of its own."""
+    """Return {way: function(block, its address)} for one graph, and the "out" where native and C leave their sound."""
     instance = Instance(rtfx.plan(rtfx.loads(HEAD + GRAPHS[name]), RATE))
     chain, c, out = Chain(numbers(), taps()), numbers(), np.empty((BLOCK, 2))
     state = ctypes.create_string_buffer(library.state_size())
@@ -70,20 +71,24 @@ def runners(name, library):
     plain.argtypes = [ctypes.c_void_p, ctypes.c_void_p, ctypes.c_long, ctypes.c_void_p, ctypes.c_void_p]
     step = getattr(chain, name)
 
-    def native(x):
-        instance.run(x, out)
-        return out[:, 0]
-
-    def in_c(x):
-        plain(x.ctypes.data, out.ctypes.data, BLOCK, ctypes.addressof(state), c.ctypes.data)
-        return out[:, 0]
-
-    return {"native": native, "c": in_c, "numpy": lambda x: step(x.astype(float))}
+    out_at, state_at, c_at = out.ctypes.data, ctypes.addressof(state), c.ctypes.data
+    return {
+        "native": lambda x, at: instance.run_at(at, out_at, BLOCK),
+        "c": lambda x, at: plain(at, out_at, BLOCK, state_at, c_at),
+        "numpy": lambda x, at: step(x),
+        "out": out,
+        "kept": (state, c),
+    }
 
 
 def check(name, ways, blocks):
     """Assert that the three give the same sound before any of them is timed."""
-    answers = {way: np.concatenate([run(x).copy() for x in blocks]) for way, run in ways.items()}
+
+    def answer(way, x):
+        given = ways[way](x, x.ctypes.data)
+        return given if way == "numpy" else ways["out"][:, 0].copy()
+
+    answers = {way: np.concatenate([answer(way, x) for x in blocks]) for way in WAYS}
     for way in ("c", "numpy"):
         worst = np.abs(answers[way] - answers["native"]).max()
         assert worst < 1e-9, f"{name}: {way} differs from native by {worst:g}"
@@ -93,18 +98,20 @@ def measure():
     """Return for each graph its name and nanoseconds a sample each way, the best of rounds that take turns."""
     guitar = demo_guitar(float(RATE))[RATE : RATE + SECONDS * RATE]
     blocks = [np.ascontiguousarray(guitar[i : i + BLOCK]) for i in range(0, len(guitar) - BLOCK + 1, BLOCK)]
+    pairs = [(x, x.ctypes.data) for x in blocks]
     results = []
     with tempfile.TemporaryDirectory() as folder:
         library = compile_c(folder)
         for name in GRAPHS:
             ways = runners(name, library)
             check(name, ways, blocks)
-            best = dict.fromkeys(ways, float("inf"))
+            best = dict.fromkeys(WAYS, float("inf"))
             for _ in range(ROUNDS):
-                for way, run in ways.items():
+                for way in WAYS:
+                    run = ways[way]
                     start = time.perf_counter()
-                    for x in blocks:
-                        run(x)
+                    for x, at in pairs:
+                        run(x, at)
                     best[way] = min(best[way], (time.perf_counter() - start) / len(blocks) / BLOCK)
             results.append({"name": name} | {f"{way}_ns": round(1e9 * t, 2) for way, t in best.items()})
     return results
