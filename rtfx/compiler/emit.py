@@ -104,7 +104,6 @@ class _Writer:
     def write(self) -> Emitted:
         for block in self.of.patch.blocks:
             self._open(block)
-        self._read_first(self._loop_breakers(None), BODY)
         for step in self.of.schedule.steps:
             if isinstance(step, str):
                 self._base_block(self.of.patch.block(step))
@@ -218,9 +217,10 @@ class _Writer:
         return name
 
     def _base_block(self, block: Placed) -> None:
-        if block.follows and self.of.codes[block.name].prepare and not block.kind.breaks_loops:
+        if block.follows:
             self.lines.append(f"{BODY}{self._prepare(block)}")
         if block.kind.breaks_loops:
+            self._give_out(block, BODY)
             return
         inputs = [self._arriving(block, port, self._base(wire), BODY) for port, wire in self._wires(block)]
         self._call(block, inputs, BODY)
@@ -238,14 +238,11 @@ class _Writer:
         blocks = [self.of.patch.block(n) for n in self.of.schedule.blocks()]
         return [b for b in blocks if b.kind.breaks_loops and self.of.widths.region_of(b.name) == region]
 
-    def _read_first(self, blocks: list[Placed], indent: str) -> None:
-        for block in blocks:
-            code = self.of.codes[block.name]
-            if block.follows and code.prepare:
-                self.lines.append(f"{indent}{self._prepare(block)}")
-            outputs = ", ".join(self._outputs(block))
-            call = f"{self._use(code.emerge)}({', '.join(self.arguments[block.name])})"
-            self.lines.append(f"{indent}{outputs} = {call}  # {block.name}, what comes out")
+    def _give_out(self, block: Placed, indent: str) -> None:
+        code = self.of.codes[block.name]
+        outputs = ", ".join(self._outputs(block))
+        call = f"{self._use(code.emerge)}({', '.join(self.arguments[block.name])})"
+        self.lines.append(f"{indent}{outputs} = {call}  # {block.name}, what comes out")
 
     def _take_in(self, blocks: list[Placed], indent: str, factor: int = 1) -> None:
         for block in blocks:
@@ -291,12 +288,12 @@ class _Writer:
             self.at_base[wire] = self._lower(self.signal[wire], at, chain)
 
     def _inner(self, index: int, blocks: list[Placed], region: Region) -> None:
-        self._read_first(self._loop_breakers(index), INNER)
         for block in blocks:
-            if block.kind.breaks_loops:
-                continue
             if block.follows and self._follows_within(block, region):
                 self.lines.append(f"{INNER}{self._prepare(block)}")
+            if block.kind.breaks_loops:
+                self._give_out(block, INNER)
+                continue
             inputs = [
                 self._arriving(block, port, self.signal[wire], INNER, region.factor)
                 for port, wire in self._wires(block)

@@ -132,3 +132,14 @@ def test_a_limiter_in_a_loop_that_needs_a_higher_rate_is_refused():
     )
     with pytest.raises(ValueError, match="'safe': limiter runs at the base rate only"):
         rtfx.plan(text(body))
+
+
+def test_a_delay_may_follow_a_signal(noise):
+    patch = text(
+        '[blocks.wobble]\nkind = "oscillator"\npitch = 2\n[blocks.late]\nkind = "delay"\nx = "input"\n'
+        'time = { base = 0.01, add = "wobble", depth = 0.005 }\n[output]\nfrom = "late"\n'
+    )
+    whole = rtfx.render(patch, noise[:9600])
+    assert np.array_equal(whole, rtfx.render(patch, noise[:9600], block=7))
+    assert np.abs(whole[:480]).max() == 0.0
+    assert np.abs(whole[960:]).max() > 0.1
