@@ -9,7 +9,6 @@ Coefficients are worked out at the start and, while a parameter glides, in every
 
 from __future__ import annotations
 
-import keyword
 from dataclasses import dataclass
 
 import numpy as np
@@ -17,15 +16,14 @@ import numpy as np
 from rtfx.blocks.kind import Code
 from rtfx.compiler.align import Alignment
 from rtfx.compiler.layout import Slot, Storage
+from rtfx.compiler.names import Names
 from rtfx.compiler.order import Schedule
 from rtfx.compiler.widen import Region, Widths
+from rtfx.dsp import glide as glides
 from rtfx.dsp import halfband
-from rtfx.dsp.glide import WORDS
-from rtfx.dsp.hold import ring_for
+from rtfx.dsp import hold as holds
 from rtfx.patch.model import INPUT, Patch, Placed, Wire
 
-_TAKEN = {"inp", "out", "frames", "p", "state", "memory", "clock", "busy", "n", "j", "guitar", "left", "right"}
-_TAKEN |= {"glide", "longest_glide", "bounded", "octaves", "hold", "whole", "up", "down", "range", "float"}
 BODY, INNER = "        ", "            "
 
 
@@ -61,43 +59,17 @@ class _Writer:
     def __init__(self, passes: Passes) -> None:
         self.of = passes
         self.storage = Storage()
-        self.imports: dict[str, str] = {}
+        self.names = Names()
         self.start: list[str] = []
         self.moving: list[str] = []
         self.lines: list[str] = []
-        self.last: list[str] = []
         self.signal: dict[Wire, str] = {Wire(INPUT): "guitar"}
         self.at_base: dict[Wire, str] = {Wire(INPUT): "guitar"}
         self.arguments: dict[str, list[str]] = {}
         self.slot = {s.target: s for s in passes.slots}
-        self.variable = self._variables()
-        for name in ("glide", "longest_glide"):
-            self._use_name("rtfx.dsp.glide", name)
-        self._use_name("rtfx.dsp.hold", "whole")
+        self.variable = {b.name: self.names.fresh(b.name) for b in passes.patch.blocks}
+        self.coefficients: dict[str, list[str]] = {}
         self.storage.state("clock", 0)
-
-    # Names
-
-    def _variables(self) -> dict[str, str]:
-        names: dict[str, str] = {}
-        for block in self.of.patch.blocks:
-            name = block.name.replace("-", "_")
-            while not name.isidentifier() or keyword.iskeyword(name) or name in _TAKEN or name in names.values():
-                name = f"b_{name}"
-            names[block.name] = name
-        return names
-
-    def _use_name(self, module: str, name: str) -> str:
-        alias = f"{module.rsplit('.', 1)[-1]}_{name}" if module.startswith("rtfx.blocks") else name
-        while self.imports.setdefault(alias, f"from {module} import {name} as {alias}") != (
-            f"from {module} import {name} as {alias}"
-        ):
-            alias += "_"
-        return alias
-
-    def _use(self, function) -> str:
-        plain = getattr(function, "py_func", function)
-        return self._use_name(plain.__module__, plain.__name__)
 
     # The whole
 
@@ -117,26 +89,27 @@ class _Writer:
         return Emitted(self._text(), state, memory)
 
     def _text(self) -> str:
+        glide, longest, whole = (self.names.function(f) for f in (glides.glide, glides.longest_glide, holds.whole))
         names, firsts = self.storage.names, self.storage.first
         count = len(self.of.slots)
         linear = sum(not s.log for s in self.of.slots)
         loads = [
-            f"    {name} = {'whole' if isinstance(first, int) else 'float'}(state[{i}])"
+            f"    {name} = {whole if isinstance(first, int) else 'float'}(state[{i}])"
             for i, (name, first) in enumerate(zip(names, firsts, strict=True))
         ]
         stores = [f"    state[{i}] = float({name})" for i, name in enumerate(names)]
-        glides = [f"{BODY}if busy > 0:", f"{INNER}busy -= 1", f"{INNER}glide(p, {linear}, {count})"]
+        gliding = [f"{BODY}if busy > 0:", f"{INNER}busy -= 1", f"{INNER}{glide}(p, {linear}, {count})"]
         return "\n".join(
             [
-                *sorted(self.imports.values()),
+                *self.names.imports(),
                 "",
                 "",
                 "def {kernel}(inp, out, frames, p, state, memory):",
                 *loads,
-                f"    busy = longest_glide(p, {count})",
+                f"    busy = {longest}(p, {count})",
                 *(f"    {line}" for line in self.start),
                 "    for n in range(frames):",
-                *glides,
+                *gliding,
                 *(f"{INNER}{line}" for line in self.moving),
                 f"{BODY}guitar = 1.0 * inp[n]",
                 *self.lines,
@@ -151,11 +124,12 @@ class _Writer:
     def _open(self, block: Placed) -> None:
         """Give *block* its state, its memory and its coefficients."""
         code, name = self.of.codes[block.name], self.variable[block.name]
-        states = [f"{name}_{s}" for s in code.state]
+        states = [self.names.fresh(f"{name}_{s}") for s in code.state]
         for state, first in zip(states, code.state.values(), strict=True):
             self.storage.state(state, first)
         memory = [] if code.memory is None else ["memory", str(self.storage.memory(code.memory))]
-        coefficients = [f"{name}_c{i}" for i in range(code.coefficients)] if code.prepare else []
+        coefficients = [self.names.fresh(f"{name}_c{i}") for i in range(code.coefficients)] if code.prepare else []
+        self.coefficients[block.name] = coefficients
         self.arguments[block.name] = [*memory, *coefficients, *states]
         if code.prepare and not block.follows:
             line = self._prepare(block)
@@ -163,27 +137,25 @@ class _Writer:
             self.moving.append(line)
 
     def _prepare(self, block: Placed) -> str:
-        code, name = self.of.codes[block.name], self.variable[block.name]
+        code = self.of.codes[block.name]
         values = [self._value(block, p) for p in block.kind.numbers]
         rate = self.of.rate * self.of.widths.factor(block.name)
-        targets = ", ".join(f"{name}_c{i}" for i in range(code.coefficients))
-        return f"{targets} = {self._use(code.prepare)}({', '.join([*values, repr(rate)])})"
+        targets = ", ".join(self.coefficients[block.name])
+        return f"{targets} = {self.names.function(code.prepare)}({', '.join([*values, repr(rate)])})"
 
     def _value(self, block: Placed, parameter) -> str:
         """The text for a parameter's present value, with what follows it added."""
         slot = self.slot.get(f"{block.name}.{parameter.name}")
         if slot is None:
             return repr(block.values[parameter.name])
-        value = f"p[{WORDS * slot.index}]"
+        value = f"p[{glides.WORDS * slot.index}]"
         follow = block.follows.get(parameter.name)
         if follow is None:
             return value
         signal = self._following(follow.wire, block.name)
         amount = f"{follow.depth!r} * {signal}"
-        moved = (
-            f"{self._use_name('rtfx.dsp.glide', 'octaves')}({value}, {amount})" if slot.log else f"{value} + {amount}"
-        )
-        bounded = self._use_name("rtfx.dsp.glide", "bounded")
+        octaves, bounded = self.names.function(glides.octaves), self.names.function(glides.bounded)
+        moved = f"{octaves}({value}, {amount})" if slot.log else f"{value} + {amount}"
         return f"{bounded}({moved}, {parameter.low!r}, {parameter.high!r})"
 
     def _following(self, wire: Wire, name: str) -> str:
@@ -192,7 +164,9 @@ class _Writer:
 
     def _outputs(self, block: Placed) -> list[str]:
         name = self.variable[block.name]
-        outputs = [name] if len(block.kind.outputs) == 1 else [f"{name}_{o}" for o in block.kind.outputs]
+        outputs = (
+            [name] if len(block.kind.outputs) == 1 else [self.names.fresh(f"{name}_{o}") for o in block.kind.outputs]
+        )
         self.signal |= {Wire(block.name, i): text for i, text in enumerate(outputs)}
         return outputs
 
@@ -201,18 +175,18 @@ class _Writer:
         code = self.of.codes[block.name]
         states = self.arguments[block.name][len(self.arguments[block.name]) - len(code.state) :]
         targets = ", ".join([*self._outputs(block), *states])
-        call = f"{self._use(code.tick)}({', '.join([*inputs, *self.arguments[block.name]])})"
+        call = f"{self.names.function(code.tick)}({', '.join([*inputs, *self.arguments[block.name]])})"
         self.lines.append(f"{indent}{targets} = {call}  # {block.name}")
 
     def _wait(self, signal: str, late: int, label: str, indent: str, factor: int = 1) -> str:
         """Make *signal* wait *late* samples; returns the text of what then comes."""
         if not late:
             return signal
-        hold = self._use_name("rtfx.dsp.hold", "hold")
-        ring = ring_for(late)
+        hold = self.names.function(holds.hold)
+        ring = holds.ring_for(late)
         at = self.storage.memory(ring)
         place = "clock" if factor == 1 else f"clock * {factor} + j"
-        name = f"{label}_late"
+        name = self.names.fresh(f"{label}_late")
         self.lines.append(f"{indent}{name} = {hold}(memory, {at}, {ring}, {late}, {place}, {signal})")
         return name
 
@@ -241,7 +215,7 @@ class _Writer:
     def _give_out(self, block: Placed, indent: str) -> None:
         code = self.of.codes[block.name]
         outputs = ", ".join(self._outputs(block))
-        call = f"{self._use(code.emerge)}({', '.join(self.arguments[block.name])})"
+        call = f"{self.names.function(code.emerge)}({', '.join(self.arguments[block.name])})"
         self.lines.append(f"{indent}{outputs} = {call}  # {block.name}, what comes out")
 
     def _take_in(self, blocks: list[Placed], indent: str, factor: int = 1) -> None:
@@ -250,7 +224,7 @@ class _Writer:
             read = self._base if factor == 1 else self.signal.__getitem__
             inputs = [self._arriving(block, port, read(wire), indent, factor) for port, wire in self._wires(block)]
             states = self.arguments[block.name][len(self.arguments[block.name]) - len(code.state) :]
-            call = f"{self._use(code.tick)}({', '.join([*inputs, *self.arguments[block.name]])})"
+            call = f"{self.names.function(code.tick)}({', '.join([*inputs, *self.arguments[block.name]])})"
             self.lines.append(f"{indent}{', '.join(states)} = {call}  # {block.name}, what goes in")
 
     # Regions
@@ -273,15 +247,13 @@ class _Writer:
         self.lines.append(f"{BODY}for j in range({region.factor}):")
         outside = dict(self.signal)
         for wire, at in entering.items():
-            name = f"{self.signal[wire] if wire in self.signal else self.at_base[wire]}_up"
+            name = self.names.fresh(f"{self._base(wire)}_up")
             self.lines.append(f"{INNER}{name} = memory[{at} + j]")
             self.signal[wire] = name
         self._inner(index, blocks, region)
         for wire, at in leaving.items():
-            label = f"{self.signal[wire]}_out"
-            signal = self._wait(
-                self.signal[wire], self.of.alignment.pad.get(wire.block, 0), label, INNER, region.factor
-            )
+            pad = self.of.alignment.pad.get(wire.block, 0)
+            signal = self._wait(self.signal[wire], pad, self.signal[wire], INNER, region.factor)
             self.lines.append(f"{INNER}memory[{at} + j] = {signal}")
         self.signal = outside | {w: t for w, t in self.signal.items() if w.block in region.blocks}
         for wire, at in leaving.items():
@@ -323,7 +295,7 @@ class _Writer:
         for stage in chain:
             high = self.storage.memory(2 * stage.many)
             at = self.storage.memory(stage.memory(2.0))
-            self._filter("up", stage, at, (stage.length - 3) // 4, low, high)
+            self._filter(halfband.up, stage, at, (stage.length - 3) // 4, low, high)
             low = high
         return low
 
@@ -332,12 +304,13 @@ class _Writer:
         for stage in reversed(chain):
             low = self.storage.memory(stage.many)
             at = self.storage.memory(stage.memory(1.0))
-            self._filter("down", stage, at, (stage.length + 1) // 4, high, low)
+            self._filter(halfband.down, stage, at, (stage.length + 1) // 4, high, low)
             high = low
-        self.lines.append(f"{BODY}{signal}_down = memory[{high}]")
-        return f"{signal}_down"
+        name = self.names.fresh(f"{signal}_down")
+        self.lines.append(f"{BODY}{name} = memory[{high}]")
+        return name
 
-    def _filter(self, way: str, stage, at: int, late: int, source: int, target: int) -> None:
-        function = self._use_name("rtfx.dsp.halfband", way)
+    def _filter(self, way, stage, at: int, late: int, source: int, target: int) -> None:
+        function = self.names.function(way)
         numbers = (at, stage.period, stage.ring, late, stage.many)
         self.lines.append(f"{BODY}{function}(memory, {', '.join(map(str, numbers))}, clock, {source}, {target})")

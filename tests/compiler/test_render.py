@@ -119,9 +119,30 @@ def test_bad_samples_are_refused():
         rtfx.plan(one("gain"), rate=8000)
 
 
-def test_a_block_may_be_called_like_a_helper(noise):
-    renamed = text(RING.format(pitch=330).replace("tone", "hold").replace("product", "glide"))
-    assert np.array_equal(rtfx.render(renamed, noise[:480]), rtfx.render(text(RING.format(pitch=330)), noise[:480]))
+LIKE_VARIABLES = [
+    "hold",
+    "tone-phase",
+    "tone_c0",
+    "guitar",
+    "up",
+    "glide",
+    "tone-late",
+    "clock",
+    "lambda",
+    "tone_",
+    "n",
+]
+
+
+@pytest.mark.parametrize("name", LIKE_VARIABLES)
+def test_no_name_of_a_block_stands_in_the_way_of_a_variable(name, noise):
+    body = RING.format(pitch=330).replace('x = "input"', 'x = "shape"') + (
+        '[blocks.shape]\nkind = "clip"\nx = "echo"\n[blocks.echo]\nkind = "delay"\nx = "input"\ntime = 0.001\n'
+    )
+    plain, renamed = text(body), text(body.replace("[blocks.echo]", f"[blocks.{name}]").replace('"echo"', f'"{name}"'))
+    assert np.array_equal(rtfx.render(renamed, noise[:960]), rtfx.render(plain, noise[:960]))
+    renamed = text(body.replace("[blocks.shape]", f"[blocks.{name}]").replace('"shape"', f'"{name}"'))
+    assert np.array_equal(rtfx.render(renamed, noise[:960]), rtfx.render(plain, noise[:960]))
 
 
 def test_a_limiter_in_a_loop_that_needs_a_higher_rate_is_refused():
