@@ -52,11 +52,19 @@ def tick_hard_4(x, drive, last, a0, a1, a2, a3):
 
 
 @inlined
+def two_averages(a, root_a, b, root_b, c, root_c):
+    """Averages of v / √(1 + v²) from *a* to *b* and from *b* to *c*, given √(1 + v²) at each, for one division."""
+    first, second = root_a + root_b, root_b + root_c
+    both = 1.0 / (first * second)
+    return (a + b) * second * both, (b + c) * first * both
+
+
+@inlined
 def tick_smooth_2(x, drive, last, root, a0, a1):
     v = x * drive
     middle = last + (v - last) * 0.5
     root_middle, root_v = sqrt(1.0 + middle * middle), sqrt(1.0 + v * v)
-    b0, b1 = (last + middle) / (root + root_middle), (middle + v) / (root_middle + root_v)
+    b0, b1 = two_averages(last, root, middle, root_middle, v, root_v)
     return (a0 + 3.0 * (a1 + b0) + b1) * 0.125, v, root_v, b0, b1
 
 
@@ -67,8 +75,8 @@ def tick_smooth_4(x, drive, last, root, a0, a1, a2, a3):
     p, q, r = last + step, last + 2.0 * step, v - step
     root_p, root_q, root_r = sqrt(1.0 + p * p), sqrt(1.0 + q * q), sqrt(1.0 + r * r)
     root_v = sqrt(1.0 + v * v)
-    b0, b1 = (last + p) / (root + root_p), (p + q) / (root_p + root_q)
-    b2, b3 = (q + r) / (root_q + root_r), (r + v) / (root_r + root_v)
+    b0, b1 = two_averages(last, root, p, root_p, q, root_q)
+    b2, b3 = two_averages(q, root_q, r, root_r, v, root_v)
     y = (a0 + b3 + 3.0 * (a1 + b2) + 5.0 * (a2 + b1) + 7.0 * (a3 + b0)) * 0.03125
     return y, v, root_v, b0, b1, b2, b3
 

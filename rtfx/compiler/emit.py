@@ -240,7 +240,8 @@ class _Writer:
         blocks = [self.of.patch.block(n) for n in names]
         self.lines.append(f"{BODY}# {region.factor} times {self.of.rate:g} Hz, for {region.because}")
         entering = {w: self._raise(w, chain, BODY) for w in self._entering(blocks, region)}
-        leaving = {w: self.storage.memory(region.factor) for w in self._leaving(region)}
+        pads = {w: self.of.alignment.pad.get(w.block, 0) for w in self._leaving(region)}
+        leaving = {w: self.storage.memory(region.factor + pad) for w, pad in pads.items()}
         for block in blocks:
             if block.follows and not self._follows_within(block, region):
                 self.lines.append(f"{BODY}{self._prepare(block)}")
@@ -252,12 +253,13 @@ class _Writer:
             self.signal[wire] = name
         self._inner(index, blocks, region)
         for wire, at in leaving.items():
-            pad = self.of.alignment.pad.get(wire.block, 0)
-            signal = self._wait(self.signal[wire], pad, self.signal[wire], INNER, region.factor)
-            self.lines.append(f"{INNER}memory[{at} + j] = {signal}")
+            self.lines.append(f"{INNER}memory[{at + pads[wire]} + j] = {self.signal[wire]}")
         self.signal = outside | {w: t for w, t in self.signal.items() if w.block in region.blocks}
         for wire, at in leaving.items():
             self.at_base[wire] = self._lower(self.signal[wire], at, chain)
+            if pads[wire]:
+                keep = self.names.function(holds.keep)
+                self.lines.append(f"{BODY}{keep}(memory, {at}, {region.factor}, {pads[wire]})")
 
     def _inner(self, index: int, blocks: list[Placed], region: Region) -> None:
         for block in blocks:
@@ -294,8 +296,7 @@ class _Writer:
         self.lines.append(f"{indent}memory[{low}] = {self._base(wire)}")
         for stage in chain:
             high = self.storage.memory(2 * stage.many)
-            at = self.storage.memory(stage.memory(2.0))
-            self._filter(halfband.up, stage, at, (stage.length - 3) // 4, low, high)
+            self._filter("up", stage, low, high)
             low = high
         return low
 
@@ -303,14 +304,14 @@ class _Writer:
         """Lines that lower the rate again from memory at *high*; returns the text of the result."""
         for stage in reversed(chain):
             low = self.storage.memory(stage.many)
-            at = self.storage.memory(stage.memory(1.0))
-            self._filter(halfband.down, stage, at, (stage.length + 1) // 4, high, low)
+            self._filter("down", stage, high, low)
             high = low
         name = self.names.fresh(f"{signal}_down")
         self.lines.append(f"{BODY}{name} = memory[{high}]")
         return name
 
-    def _filter(self, way, stage, at: int, late: int, source: int, target: int) -> None:
-        function = self.names.function(way)
-        numbers = (at, stage.period, stage.ring, late, stage.many)
-        self.lines.append(f"{BODY}{function}(memory, {', '.join(map(str, numbers))}, clock, {source}, {target})")
+    def _filter(self, way: str, stage: halfband.Stage, source: int, target: int) -> None:
+        at = self.storage.memory(stage.memory(way))
+        function, numbers = stage.call(way)
+        arguments = ", ".join(map(str, ["memory", at, *numbers, source, target]))
+        self.lines.append(f"{BODY}{self.names.function(function)}({arguments})")

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import keyword
+import sys
 
 KERNEL_NAMES = ["inp", "out", "frames", "p", "state", "memory", "clock", "busy", "n", "j", "guitar", "range", "float"]
 
@@ -26,10 +27,12 @@ class Names:
 
     def function(self, function) -> str:
         """Return the name under which *function* (of a module) is called in the source."""
-        plain = getattr(function, "py_func", function)
-        module, name = plain.__module__, plain.__name__
+        module = getattr(function, "py_func", function).__module__
+        name = next(n for n, value in vars(sys.modules[module]).items() if value is function and n[0] != "_")
         if (module, name) not in self.aliases:
-            readable = name if module.startswith("rtfx.dsp.") else f"{module.rsplit('.', 1)[-1]}_{name}"
+            readable = (
+                name if module.startswith(("rtfx.dsp.", "rtfx.native.")) else f"{module.rsplit('.', 1)[-1]}_{name}"
+            )
             self.aliases[module, name] = self.fresh(readable)
         return self.aliases[module, name]
 

@@ -19,6 +19,13 @@ def ring_for(late):
 
 
 @inlined
+def keep(memory, at, factor, pad):
+    """Keep the last *pad* of *factor* + *pad* samples for the next frame, in which they come first."""
+    for i in range(pad):
+        memory[at + i] = memory[at + factor + i]
+
+
+@inlined
 def whole(x):
     """Return *x* as an integer: int() called in a kernel itself would leave numba's error path in it."""
     return int(x)
