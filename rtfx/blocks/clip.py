@@ -10,9 +10,8 @@ continuous-time convolution", DAFx-16, 2016 (abstract read).  Both averages are 
 by a small difference: smooth, (a+b) / (√(1+a²) + √(1+b²)); hard, the clipped areas one by one.
 """
 
-from math import sqrt
-
 from rtfx.blocks.kind import Choice, Code, Parameter, kind
+from rtfx.native.lanewise import both_ways
 from rtfx.native.options import inlined
 
 
@@ -51,7 +50,6 @@ def tick_hard_4(x, drive, last, a0, a1, a2, a3):
     return y, v, b0, b1, b2, b3
 
 
-@inlined
 def two_averages(a, root_a, b, root_b, c, root_c):
     """Averages of v / √(1 + v²) from *a* to *b* and from *b* to *c*, given √(1 + v²) at each, for one division."""
     first, second = root_a + root_b, root_b + root_c
@@ -59,26 +57,30 @@ def two_averages(a, root_a, b, root_b, c, root_c):
     return (a + b) * second * both, (b + c) * first * both
 
 
-@inlined
-def tick_smooth_2(x, drive, last, root, a0, a1):
+def smooth_2(x, drive, last, root, a0, a1):
     v = x * drive
-    middle = last + (v - last) * 0.5
-    root_middle, root_v = sqrt(1.0 + middle * middle), sqrt(1.0 + v * v)
-    b0, b1 = two_averages(last, root, middle, root_middle, v, root_v)
-    return (a0 + 3.0 * (a1 + b0) + b1) * 0.125, v, root_v, b0, b1
+    before = v.after(last)
+    middle = before + (v - before) * 0.5
+    root_middle, root_v = (middle * middle + 1.0).sqrt(), (v * v + 1.0).sqrt()
+    b0, b1 = two_averages(before, root_v.after(root), middle, root_middle, v, root_v)
+    y = (b0.after(a0) + 3.0 * (b1.after(a1) + b0) + b1) * 0.125
+    return y, v.last(), root_v.last(), b0.last(), b1.last()
 
 
-@inlined
-def tick_smooth_4(x, drive, last, root, a0, a1, a2, a3):
+def smooth_4(x, drive, last, root, a0, a1, a2, a3):
     v = x * drive
-    step = (v - last) * 0.25
-    p, q, r = last + step, last + 2.0 * step, v - step
-    root_p, root_q, root_r = sqrt(1.0 + p * p), sqrt(1.0 + q * q), sqrt(1.0 + r * r)
-    root_v = sqrt(1.0 + v * v)
-    b0, b1 = two_averages(last, root, p, root_p, q, root_q)
+    before = v.after(last)
+    step = (v - before) * 0.25
+    p, q, r = before + step, before + 2.0 * step, v - step
+    root_p, root_q, root_r, root_v = ((u * u + 1.0).sqrt() for u in (p, q, r, v))
+    b0, b1 = two_averages(before, root_v.after(root), p, root_p, q, root_q)
     b2, b3 = two_averages(q, root_q, r, root_r, v, root_v)
-    y = (a0 + b3 + 3.0 * (a1 + b2) + 5.0 * (a2 + b1) + 7.0 * (a3 + b0)) * 0.03125
-    return y, v, root_v, b0, b1, b2, b3
+    outer, inner = b0.after(a0) + b3 + 3.0 * (b1.after(a1) + b2), 5.0 * (b2.after(a2) + b1) + 7.0 * (b3.after(a3) + b0)
+    return (outer + inner) * 0.03125, v.last(), root_v.last(), b0.last(), b1.last(), b2.last(), b3.last()
+
+
+tick_smooth_2, sweep_smooth_2 = both_ways(smooth_2)
+tick_smooth_4, sweep_smooth_4 = both_ways(smooth_4)
 
 
 LITTLE, MUCH, MOST = 7, 16, 32  # effective orders: they lead to 4, 8 and 16 times oversampling at 48 kHz
@@ -99,11 +101,11 @@ def _bandwidth(setting, inputs):
     return n * max(inputs.values())
 
 
-_TICKS = {
-    ("hard", "stage"): tick_hard_2,
-    ("hard", "studio"): tick_hard_4,
-    ("smooth", "stage"): tick_smooth_2,
-    ("smooth", "studio"): tick_smooth_4,
+_WAYS = {
+    ("hard", "stage"): (tick_hard_2, None),
+    ("hard", "studio"): (tick_hard_4, None),
+    ("smooth", "stage"): (tick_smooth_2, sweep_smooth_2),
+    ("smooth", "studio"): (tick_smooth_4, sweep_smooth_4),
 }
 
 
@@ -124,4 +126,5 @@ def clip(setting):
     law, steps = setting.choices["law"], 4 if setting.quality == "studio" else 2
     state = {"last": 0.0} | ({"root": 1.0} if law == "smooth" else {})
     state |= {f"a{i}": 0.0 for i in range(steps)}
-    return Code(tick=_TICKS[law, setting.quality], prepare=prepare, state=state, delay=1)
+    tick, sweep = _WAYS[law, setting.quality]
+    return Code(tick=tick, sweep=sweep, prepare=prepare, state=state, delay=1)

@@ -15,11 +15,13 @@ Calling convention of the code (all functions are compiled with `rtfx.native.opt
     prepare(*numbers, rate)                          -> a coefficient, or a tuple of them
     tick(*ports, [memory, at,] *coefficients, *state) -> (*outputs, *state)
     emerge([memory, at,] *coefficients, *state)       -> (*outputs,)         only where `breaks_loops`
+    sweep(memory, source, target, many, *coefficients, *state) -> (*state,)  if there is one
 
 *numbers* are the values of the `Parameter`s in declared order, in their own unit; *rate* (Hz) is the rate at
 which `tick` runs, which is the oversampled one inside a region.  `memory[at:]` is the block's own memory.  With
 `emerge`, what comes out is read first and `tick` only takes in: it returns the state alone.  A single value is
-returned bare, not as a tuple of one.
+returned bare, not as a tuple of one.  `sweep` does what `tick` does for *many* samples at memory[source:], written to
+memory[target:]; a region that holds nothing but this block runs it instead (see rtfx.native.lanewise).
 """
 
 from __future__ import annotations
@@ -96,6 +98,7 @@ class Code:
     tick: Callable[..., Any]
     prepare: Callable[..., Any] | None = None
     emerge: Callable[..., Any] | None = None
+    sweep: Callable[..., Any] | None = None
     coefficients: int = 1
     state: Mapping[str, float | int] = field(default_factory=dict)
     memory: np.ndarray | None = None

@@ -245,6 +245,35 @@ class _Writer:
         for block in blocks:
             if block.follows and not self._follows_within(block, region):
                 self.lines.append(f"{BODY}{self._prepare(block)}")
+        if self._sweeps(blocks, region):
+            self._sweep(blocks[0], region, entering, leaving, pads)
+        else:
+            self._sample_by_sample(index, blocks, region, entering, leaving, pads)
+        for wire, at in leaving.items():
+            self.at_base[wire] = self._lower(self.signal[wire], at, chain)
+            if pads[wire]:
+                keep = self.names.function(holds.keep)
+                self.lines.append(f"{BODY}{keep}(memory, {at}, {region.factor}, {pads[wire]})")
+
+    def _sweeps(self, blocks: list[Placed], region: Region) -> bool:
+        """Tell whether a region is a single block that can take all samples of a frame at once."""
+        return (
+            len(blocks) == 1
+            and bool(self.of.codes[blocks[0].name].sweep)
+            and not self._follows_within(blocks[0], region)
+        )
+
+    def _sweep(self, block: Placed, region: Region, entering, leaving, pads) -> None:
+        code = self.of.codes[block.name]
+        ((wire, target),) = leaving.items()
+        (source,) = entering.values()
+        self._outputs(block)
+        states = ", ".join(self.arguments[block.name][-len(code.state) :])
+        given = ", ".join(self.arguments[block.name])
+        call = f"{self.names.function(code.sweep)}(memory, {source}, {target + pads[wire]}, {region.factor}, {given})"
+        self.lines.append(f"{BODY}{states} = {call}  # {block.name}")
+
+    def _sample_by_sample(self, index: int, blocks: list[Placed], region: Region, entering, leaving, pads) -> None:
         self.lines.append(f"{BODY}for j in range({region.factor}):")
         outside = dict(self.signal)
         for wire, at in entering.items():
@@ -255,11 +284,6 @@ class _Writer:
         for wire, at in leaving.items():
             self.lines.append(f"{INNER}memory[{at + pads[wire]} + j] = {self.signal[wire]}")
         self.signal = outside | {w: t for w, t in self.signal.items() if w.block in region.blocks}
-        for wire, at in leaving.items():
-            self.at_base[wire] = self._lower(self.signal[wire], at, chain)
-            if pads[wire]:
-                keep = self.names.function(holds.keep)
-                self.lines.append(f"{BODY}{keep}(memory, {at}, {region.factor}, {pads[wire]})")
 
     def _inner(self, index: int, blocks: list[Placed], region: Region) -> None:
         for block in blocks:

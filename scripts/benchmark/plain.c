@@ -98,6 +98,12 @@ static double driven(State *s, double x, double drive, double step) {
     return lower8(s, y8) * carrier(s, step);
 }
 
+typedef void (*Graph)(const float *, double *, long, State *, const double *);
+
+void repeat(Graph graph, const float *in, double *out, long n, long blocks, State *s, const double *c) {
+    for (long i = 0; i < blocks; i++) graph(in + i * n, out + 2 * i * n, n, s, c);
+}
+
 int state_size(void) { return sizeof(State); }
 void reset(State *s) { memset(s, 0, sizeof *s); s->root = 1; }
 

@@ -21,14 +21,17 @@ def _die_with_parent():
 
 
 class JackServer:
-    """Within ``with``, a server with this *period*; *sync* makes it wait for its clients in every cycle."""
+    """Within ``with``, a server with this *period*.
 
-    def __init__(self, period=128, rate=48_000, sync=True):
+    *sync* makes it wait for its clients in every cycle; *realtime* asks for a real-time priority.
+    """
+
+    def __init__(self, period=128, rate=48_000, sync=True, realtime=False):
         if shutil.which("jackd") is None:
             raise RuntimeError("jackd is missing; install it: apt-get install jackd2")
         self.name = "t" + uuid.uuid4().hex[:8]
         driver = ["-d", "dummy", "-r", str(rate), "-p", str(period)]
-        self.command = ["jackd", "-n", self.name, "-r", *(["-S"] if sync else []), *driver]
+        self.command = ["jackd", "-n", self.name, "-R" if realtime else "-r", *(["-S"] if sync else []), *driver]
         self.process = None
         self.killed = False
 
