@@ -12,15 +12,12 @@ TARGETS = {"c": 1.15, "balanced": 3, "driven_balanced": 20, "six_blocks": 20, "o
 def show(results):
     """Print one table for the graphs and one for the callbacks."""
     print(f"ns a sample, {timing.BLOCK} frames a block; the best of rounds that take turns; answers equal to 1e-9")
-    print(
-        f"{'graph':18}{'native':>9}{'C':>9}{'numpy':>10}{'native/C':>10}{'(wanted)':>10}{'numpy/native':>14}{'(wanted)':>10}"
-    )
+    row = "{:18}{:>9}{:>9}{:>10}{:>10}{:>10}{:>14}{:>10}"
+    print(row.format("graph", "native", "C", "numpy", "native/C", "(wanted)", "numpy/native", "(wanted)"))
     for r in results["graphs"]:
         native, c, chain = r["native_ns"], r["c_ns"], r["numpy_ns"]
-        wanted = f"{'≤ ' + str(TARGETS['c']):>10}", f"{'≥ ' + str(TARGETS[r['name']]):>10}"
-        print(
-            f"{r['name']:18}{native:9.1f}{c:9.1f}{chain:10.1f}{native / c:10.2f}{wanted[0]}{chain / native:14.1f}{wanted[1]}"
-        )
+        ratios = (f"{native / c:.2f}", f"≤ {TARGETS['c']}", f"{chain / native:.1f}", f"≥ {TARGETS[r['name']]}")
+        print(row.format(r["name"], f"{native:.1f}", f"{c:.1f}", f"{chain:.1f}", *ratios))
     print(f"\nthe engine adds {results['overhead_us']} us a block (wanted ≤ {TARGETS['overhead_us']})")
     if "callback" in results:
         print("\ncallbacks missed at 64 frames on JACK's dummy device, a Python loop keeping the interpreter busy")

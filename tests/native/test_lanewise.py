@@ -1,5 +1,7 @@
 """A formula written once: all samples of a frame at once give the bits that one sample at a time gives."""
 
+from itertools import pairwise
+
 import numpy as np
 import pytest
 from numba import cfunc, types
@@ -44,7 +46,7 @@ def test_the_formula_is_the_average_it_claims_to_be(samples):
     slow = samples[:16] * 0.1
     v = np.concatenate([[0.0, 0.0], 12.5 * slow])
     t = (np.arange(1000) + 0.5) / 1000
-    half = [(a + (b - a) * (t + s) / 2) for a, b in zip(v, v[1:], strict=False) for s in (0, 1)]
+    half = [(a + (b - a) * (t + s) / 2) for a, b in pairwise(v) for s in (0, 1)]
     averages = np.array([np.mean(u / np.sqrt(1 + u * u)) for u in half])
     expected = [np.dot([1, 3, 3, 1], averages[i : i + 4]) / 8 for i in range(0, len(averages) - 2, 2)]
     assert np.abs(run(one_at_a_time, slow) - expected).max() < 1e-6
