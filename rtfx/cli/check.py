@@ -21,7 +21,7 @@ def cost_ns(plan) -> float:
 
     instance = Instance(plan)
     samples = (0.1 * np.random.default_rng(1).standard_normal(BLOCK)).astype(np.float32)
-    out = np.empty((BLOCK, 2))
+    out = np.empty((BLOCK, 2), np.float32)
     best = float("inf")
     for _ in range(5):
         start = time.perf_counter()

@@ -16,6 +16,8 @@ from rtfx.patch.model import Patch
 
 GLIDE_S = 0.02
 """How long a moved parameter takes to arrive."""
+CHUNK = 1024
+"""Frames a kernel is given at a time; it changes nothing in the result."""
 
 
 @dataclass(frozen=True)
@@ -30,11 +32,18 @@ class Move:
 _DRIVER = """\
 from rtfx.native.calls import call_kernel
 from rtfx.native.flush import flush_on, flush_restore
+from rtfx.native.memory import float_at
 
 
-def {kernel}(words, inp, out, frames, p, state, memory):
+def {kernel}(words, inp, scratch, chunk, out, frames, p, state, memory):
     mode = flush_on()
-    call_kernel(words, 0, inp, out, frames, p, state, memory)
+    done = 0
+    while done < frames:
+        count = min(chunk, frames - done)
+        call_kernel(words, 0, float_at(inp, done), scratch, count, p, state, memory)
+        for i in range(2 * count):
+            out[2 * done + i] = scratch[i]
+        done += count
     flush_restore(mode)
 """
 
@@ -53,9 +62,11 @@ def _driver():
 
     from rtfx.native.options import f32p, f64p, i64p
 
-    built = build.compile_at(build.write(_DRIVER), types.void(i64p, f32p, f64p, types.int64, f64p, f64p, f64p))
-    pointer = ctypes.c_void_p
-    call = ctypes.CFUNCTYPE(None, pointer, pointer, pointer, ctypes.c_int64, pointer, pointer, pointer)(built.address)
+    whole, pointer, number = types.int64, ctypes.c_void_p, ctypes.c_int64
+    signature = types.void(i64p, f32p, f64p, whole, f32p, whole, f64p, f64p, f64p)
+    built = build.compile_at(build.write(_DRIVER), signature)
+    kind = ctypes.CFUNCTYPE(None, pointer, pointer, pointer, number, pointer, number, pointer, pointer, pointer)
+    call = kind(built.address)
     return built, call
 
 
@@ -81,17 +92,18 @@ class Instance:
         self.words = np.array([self.built.address], np.int64)
         self.parameters = plan.parameters()
         self.state, self.memory = plan.state.copy(), plan.memory.copy()
+        self.scratch = np.empty((CHUNK, 2))
         self._drive = _driver()[1]
-        self._words = self.words.ctypes.data
-        self._own = tuple(a.ctypes.data for a in (self.parameters, self.state, self.memory))
 
     def run(self, samples: np.ndarray, out: np.ndarray) -> None:
-        """Run over *samples* (float32, contiguous, shape (frames,)) into *out* (float64, shape (frames, 2))."""
-        self.run_at(samples.ctypes.data, out.ctypes.data, len(samples))
+        """Run over *samples* (float32, shape (frames,)) into *out* (float32, shape (frames, 2)), both contiguous.
 
-    def run_at(self, samples: int, out: int, frames: int) -> None:
-        """Do the same with the addresses of the two arrays."""
-        self._drive(self._words, samples, out, frames, *self._own)
+        Numbers too small for a float32 become 0 on the way out, as they do in the audio callback.
+        """
+        self._drive(
+            self.words.ctypes.data, samples.ctypes.data, self.scratch.ctypes.data, CHUNK, out.ctypes.data, len(samples),
+            self.parameters.ctypes.data, self.state.ctypes.data, self.memory.ctypes.data,
+        )  # fmt: skip
 
     def move(self, target: str, value: float, glide_s: float = GLIDE_S) -> None:
         """Send a parameter on its way to *value*, from the next frame on."""
@@ -161,7 +173,7 @@ def render(
     if block is not None and block < 1:
         raise ValueError(f"block = {block} frames; wanted 1 or more")
     instance = Instance(worked_out)
-    out = np.empty((len(dry), 2))
+    out = np.empty((len(dry), 2), np.float32)
     todo = sorted(moves, key=lambda move: move.frame)
     at = 0
     while at < len(dry):
@@ -171,4 +183,4 @@ def render(
         until = min(len(dry), todo[0].frame if todo else len(dry), at + (block or len(dry)))
         instance.run(dry[at:until], out[at:until])
         at = until
-    return out.astype(np.float32)
+    return out

@@ -33,10 +33,15 @@ def library():
     return sounddevice
 
 
+def _shared_library():
+    """Return PortAudio itself, for what sounddevice does not offer; None if it is not installed by itself."""
+    found = ctypes.util.find_library("portaudio")
+    return ctypes.CDLL(found) if found else None
+
+
 def _name_client() -> None:
     """Have JACK call our ports rtfx:in_0 and so on; a PortAudio without JACK does not mind."""
-    found = ctypes.util.find_library("portaudio")
-    name_it = getattr(ctypes.CDLL(found), "PaJack_SetClientName", None) if found else None
+    name_it = getattr(_shared_library(), "PaJack_SetClientName", None)
     if name_it is not None:
         _name_client.kept = ctypes.c_char_p(CLIENT)  # type: ignore[attr-defined]
         name_it(_name_client.kept)  # type: ignore[attr-defined]
@@ -121,12 +126,23 @@ class PortAudio:
                 callback=ffi.cast("PaStreamCallback*", host.callback.address),
                 userdata=ffi.cast("void*", host.userdata), wrap_callback=None,
             )  # fmt: skip
+            self._ask_for_priority()
             self.stream.start()
         except self.sd.PortAudioError as error:
             raise DeviceError(
                 f"{self.description}: the device refuses ({error.args[0]}). "
                 f"Its own rate is {self.output['rate']:g} Hz: try --rate {self.output['rate']:g} and --block 0."
             ) from None
+
+    def _ask_for_priority(self) -> None:
+        """Ask for a real-time thread where PortAudio does not do so by itself: on ALSA.
+
+        Without the right to it (the group "audio", or rtprio in limits.d) the stream runs all the same.
+        """
+        enable = getattr(_shared_library(), "PaAlsa_EnableRealtimeScheduling", None)
+        if self.output["host"] == "ALSA" and enable is not None:
+            enable.argtypes = [ctypes.c_void_p, ctypes.c_int]
+            enable(int(self.sd._ffi.cast("intptr_t", self.stream._ptr)), 1)
 
     @property
     def active(self) -> bool:

@@ -1,47 +1,13 @@
 """The callback as a device would call it."""
 
-import ctypes
-
 import numpy as np
 import pytest
 from patches import RING, one, text
+from stand import Stand, graph
 
 import rtfx
-from rtfx.devices.artifact import load, save
 from rtfx.engine import queues
-from rtfx.engine.host import Host
-from rtfx.engine.layout import OFFSET, Shared
 from rtfx.engine.words import NEXT
-
-RATE = 48_000
-
-
-def graph(plan, number):
-    linear = sum(not s.log for s in plan.slots)
-    return load(save(plan), number, [s.value for s in plan.slots], linear)
-
-
-class Stand:
-    """A host with a shared block of its own, and the device's side of it."""
-
-    def __init__(self, plan, ceiling=0.99):
-        self.shared = Shared(bytearray(8 * OFFSET["SIZE"]))
-        self.shared.set("RATE", RATE)
-        self.shared.set("CEILING", ceiling)
-        self.shared.set("FADE_FRAMES", 1000)
-        self.host = Host(self.shared, graph(plan, 1), 1, 2)
-        pointer = ctypes.c_void_p
-        kind = ctypes.CFUNCTYPE(ctypes.c_int, pointer, pointer, ctypes.c_ulong, pointer, ctypes.c_ulong, pointer)
-        self.call = kind(self.host.callback.address)
-
-    def run(self, samples, block=64):
-        samples = np.ascontiguousarray(samples, np.float32)
-        out = np.zeros((len(samples), 2), np.float32)
-        for at in range(0, len(samples), block):
-            count = min(block, len(samples) - at)
-            self.call(samples[at:].ctypes.data, out[at:].ctypes.data, count, None, 0, self.host.userdata)
-            self.host.tend()
-        return out
 
 
 @pytest.fixture
@@ -143,3 +109,13 @@ def test_blocks_and_frames_are_counted(ring, noise):
     assert stand.shared.get("BLOCKS") == 100
     assert stand.shared.get("FRAMES") == 6400
     assert stand.shared.many("LOAD").sum() == 100
+
+
+def test_what_fades_below_the_smallest_float_is_the_same_live_and_offline():
+    """Denormals are flushed in the callback, on the way to float32 too; offline must do just that."""
+    plan = rtfx.plan(one("lowpass", cutoff=200))
+    click = np.zeros(24_000, np.float32)
+    click[6000] = 1e-30
+    offline = rtfx.render(plan, click)
+    assert np.array_equal(Stand(plan).run(click)[4801:], offline[4801:])
+    assert np.abs(offline[offline != 0]).min() >= np.finfo(np.float32).tiny
