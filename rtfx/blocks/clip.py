@@ -97,6 +97,7 @@ def effective_order(law, drive_db, quality):
 
 
 def _bandwidth(setting, inputs):
+    """7, 16 or 32 times the bandwidth of its input, by law, highest drive and quality."""
     n = effective_order(setting.choices["law"], setting.reach["drive"][1], setting.quality)
     return n * max(inputs.values())
 

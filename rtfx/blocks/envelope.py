@@ -29,6 +29,7 @@ def tick(x, rise, fall, level):
 
 
 def _bandwidth(setting, inputs):
+    """What its quickest attack lets through: 1/(2π·attack)."""
     return min(max(inputs.values()), 1.0 / (2.0 * pi * setting.reach["attack"][0]))
 
 

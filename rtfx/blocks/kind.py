@@ -106,21 +106,27 @@ class Code:
 
 
 Bandwidth = Callable[[Setting, Mapping[str, float]], float]
+"""``rule(setting, {port: Hz}) -> Hz``: how wide the output is; its docstring says the rule in words."""
 
 
 def unchanged(setting: Setting, inputs: Mapping[str, float]) -> float:
-    """Bandwidth of what is linear: as wide as its widest input (Hz)."""
+    """As wide as its widest input."""
     return max(inputs.values(), default=0.0)
 
 
 def product(setting: Setting, inputs: Mapping[str, float]) -> float:
-    """Bandwidth of a product: the sum of its inputs' (Hz)."""
+    """The bandwidths of its inputs together."""
     return sum(inputs.values())
 
 
 def order(n: int) -> Bandwidth:
-    """Bandwidth of a polynomial of order *n*: n times its input's (Hz)."""
-    return lambda setting, inputs: n * max(inputs.values())
+    """Return the rule for a polynomial of order *n*."""
+
+    def times(setting: Setting, inputs: Mapping[str, float]) -> float:
+        return n * max(inputs.values())
+
+    times.__doc__ = f"{n} times the bandwidth of its input."
+    return times
 
 
 @dataclass(frozen=True)
@@ -181,7 +187,7 @@ def kind(
         Audio inputs; one is called "x", a second "y".
     parameters : tuple of Parameter and Choice
     bandwidth : callable
-        ``bandwidth(setting, {port: Hz}) -> Hz``: how wide the output is.  See `unchanged`, `product`, `order`.
+        How wide the output is: see `Bandwidth`, and `unchanged`, `product`, `order`.
     outputs : tuple of str
         More than one only where a block makes stereo.
     linear : bool

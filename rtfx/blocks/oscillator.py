@@ -44,6 +44,7 @@ def tick_table(memory, at, step, lower, upper, weight, phase):
 
 
 def _highest_harmonic(setting, inputs):
+    """Its highest pitch; 20 kHz for waves that have harmonics."""
     return setting.reach["pitch"][1] if setting.choices["wave"] == "sine" else AUDIBLE_HZ
 
 

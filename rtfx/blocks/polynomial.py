@@ -32,6 +32,7 @@ def highest_power(setting):
 
 
 def _bandwidth(setting, inputs):
+    """The bandwidth of its input times the highest power whose weight can leave 0."""
     return highest_power(setting) * max(inputs.values())
 
 

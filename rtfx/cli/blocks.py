@@ -27,6 +27,7 @@ def facts_of(kind) -> dict:
         "ports": list(kind.ports),
         "outputs": list(kind.outputs),
         "parameters": [facts(p) for p in kind.parameters],
+        "bandwidth": (kind.bandwidth.__doc__ or "By a rule of its own.").splitlines()[0],
         "law": kind.law,
         "source": kind.source,
     }
@@ -53,14 +54,16 @@ def _show_one(facts: dict) -> None:
     console.print(f"takes   {', '.join(facts['ports']) or 'nothing: it is a source'}")
     console.print(f"gives   {', '.join(facts['outputs'])}")
     console.print(f"law     {facts['law']}", highlight=False)
+    console.print(f"width   {facts['bandwidth']}", highlight=False)
     console.print(f"source  {facts['source']}\n", highlight=False)
     table = Table(box=None, pad_edge=False, header_style="bold")
-    for title in ("parameter", "range", "unless given", "what it is"):
+    for title in ("parameter", "range", "scale", "unless given", "what it is"):
         table.add_column(title)
     for p in facts["parameters"]:
         reach = " | ".join(p["choices"]) if "choices" in p else f"{p['low']:g} to {p['high']:g} {p['unit']}".strip()
         default = p["default"] if "choices" in p else f"{p['default']:g} {p['unit']}".strip()
-        table.add_row(p["name"], reach, default, p["about"])
+        scale = "" if "choices" in p else "fixed" if p["fixed"] else p["taper"]
+        table.add_row(p["name"], reach, scale, default, p["about"])
     if facts["parameters"]:
         console.print(table)
 

@@ -33,7 +33,9 @@ class _Lazy(TyperGroup):
         return command
 
 
-app = typer.Typer(cls=_Lazy, no_args_is_help=True, add_completion=False, rich_markup_mode=None)
+app = typer.Typer(
+    cls=_Lazy, no_args_is_help=True, add_completion=False, rich_markup_mode=None, pretty_exceptions_enable=False
+)
 
 
 @app.callback()

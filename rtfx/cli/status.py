@@ -36,7 +36,7 @@ def carriers(front: Front) -> list[dict]:
         hz = float(values[slot.index])
         if patch.block(block).kind.name == "oscillator" and parameter == "pitch" and hz >= 20:
             note, cents = nearest(hz, patch.reference)
-            found.append({"block": block, "hz": round(hz, 3), "note": note, "cents": round(cents, 1)})
+            found.append({"block": block, "hz": round(hz, 3), "note": note, "cents": round(cents, 1) + 0.0})
     return found
 
 

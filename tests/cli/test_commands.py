@@ -70,7 +70,7 @@ def test_check_gives_its_facts_as_json():
 def test_blocks_gives_every_kind_as_json():
     kinds = json.loads(run("blocks", "--json").stdout)["kinds"]
     assert [k["kind"] for k in kinds] == list(names())
-    assert all(k["law"] and k["source"] and k["about"] for k in kinds)
+    assert all(k["law"] and k["source"] and k["about"] and k["bandwidth"] for k in kinds)
 
 
 def test_unknown_kind_is_answered_with_the_nearest():
@@ -110,3 +110,15 @@ def test_a_saved_patch_fades_in_and_a_mistake_leaves_the_old_one(tmp_path):
         path.write_text(PRESET.read_text().replace('pitch = "E4"', 'pitch = "H4"'))
         assert "wanted a note" in program.until_message("not changed")["message"]
         assert program.until(lambda f: f.get("state") == "playing")["graph"] == 2
+
+
+def test_a_fault_of_our_own_is_kept_in_a_file_and_said_in_a_line(tmp_path, monkeypatch, capsys):
+    from rtfx.cli.faults import explained
+
+    monkeypatch.setenv("XDG_STATE_HOME", str(tmp_path))
+    with pytest.raises(SystemExit, match="1"), explained():
+        raise AssertionError("impossible")
+    message = capsys.readouterr().err
+    assert "fault of rtfx itself" in message
+    assert "impossible" in next(tmp_path.rglob("fault-*.txt")).read_text()
+    assert "Traceback" not in message

@@ -75,3 +75,16 @@ def test_status_line_says_what_there_is_to_know():
     assert facts["blocks"] > 0
     assert facts["late_blocks"] <= facts["blocks"] // 100
     json.dumps(facts)
+
+
+def test_a_rate_that_the_server_refuses_is_said_with_the_way_out():
+    with JackServer(128) as server, playing_on_system(server, "--rate", "44100") as program:
+        assert program.process.wait(20) == 1
+        message = program.process.stderr.read()
+    assert "the device refuses" in message
+    assert "try --rate 48000" in message
+    assert "Traceback" not in message
+
+
+def playing_on_system(server, *more):
+    return Program(str(PRESETS / "two-sides.toml"), "--device", "system", *more, env=server.env)
