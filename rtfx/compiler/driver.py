@@ -9,8 +9,10 @@ import numpy as np
 
 from rtfx.compiler import build
 from rtfx.compiler.align import align
-from rtfx.compiler.emit import Passes, emit
+from rtfx.compiler.emit import emit
+from rtfx.compiler.graph import heard
 from rtfx.compiler.layout import Slot, parameter_words, slots
+from rtfx.compiler.lines import Passes
 from rtfx.compiler.order import order
 from rtfx.compiler.reach import setting
 from rtfx.compiler.widen import Region, widen
@@ -67,7 +69,7 @@ class Plan:
 
 
 def plan(patch: Patch, rate: float = 48_000.0, quality: str = "stage") -> Plan:
-    """Work out how *patch* runs at *rate*.
+    """Work out how *patch* runs at *rate*; blocks that lead nowhere are left out.
 
     Parameters
     ----------
@@ -86,7 +88,7 @@ def plan(patch: Patch, rate: float = 48_000.0, quality: str = "stage") -> Plan:
         raise ValueError(f"rate = {rate:g} Hz is outside {RATES[0]:g} to {RATES[1]:g} Hz")
     if quality not in QUALITIES:
         raise ValueError(f"quality = '{quality}' is not one of: {', '.join(QUALITIES)}")
-    rate = float(rate)
+    rate, patch = float(rate), heard(patch)
     widths = widen(patch, rate, quality)
     codes = {b.name: b.kind.build(setting(patch, b, rate * widths.factor(b.name), quality)) for b in patch.blocks}
     alignment = align(patch, widths, codes, rate, quality)

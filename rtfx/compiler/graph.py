@@ -3,10 +3,18 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from dataclasses import replace
 from functools import cached_property
 from graphlib import TopologicalSorter
 
 from rtfx.patch.model import INPUT, Patch
+
+
+def heard(patch: Patch) -> Patch:
+    """Return *patch* without the blocks that do not lead to its output."""
+    graph, ends = Graph(patch), {patch.left.block, patch.right.block} - {INPUT}
+    kept = ends.union(*(graph.before[n] for n in ends))
+    return replace(patch, blocks=tuple(b for b in patch.blocks if b.name in kept))
 
 
 class Graph:

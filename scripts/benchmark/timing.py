@@ -53,7 +53,7 @@ def graphs():
     return results
 
 
-def overhead_us(name="six_blocks"):
+def overhead_us(name="balanced"):
     """Return how many microseconds a block the whole callback takes beyond the bare graph."""
     shared = Shared(bytearray(8 * OFFSET["SIZE"]))
     shared.set("RATE", RATE)

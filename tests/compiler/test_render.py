@@ -164,3 +164,34 @@ def test_a_delay_may_follow_a_signal(noise):
     assert np.array_equal(whole, rtfx.render(patch, noise[:9600], block=7))
     assert np.abs(whole[:480]).max() == 0.0
     assert np.abs(whole[960:]).max() > 0.1
+
+
+def test_a_block_that_leads_nowhere_is_left_out(noise):
+    body = RING.format(pitch=330) + '[blocks.idle]\nkind = "clip"\nx = "input"\n'
+    plan = rtfx.plan(text(body))
+    assert plan.order == ("tone", "product")
+    assert np.array_equal(rtfx.render(plan, noise), rtfx.render(text(RING.format(pitch=330)), noise))
+
+
+def test_a_region_may_have_two_outputs_and_two_inputs(noise):
+    body = """
+[blocks.shape]
+kind = "clip"
+x = "input"
+drive = 24
+[blocks.spread]
+kind = "pan"
+x = "shape"
+[blocks.product]
+kind = "multiply"
+x = "spread.left"
+y = "input"
+[output]
+left = "product"
+right = "shape"
+"""
+    plan = rtfx.plan(text(body))
+    whole = rtfx.render(plan, noise[:4800])
+    assert np.array_equal(whole, rtfx.render(plan, noise[:4800], block=7))
+    assert len(plan.regions) == 1
+    assert np.array_equal(rtfx.render(one("clip", drive=24), noise[:4700])[:, 1], whole[:4700, 1])
