@@ -10,6 +10,9 @@ from rtfx.blocks.kind import Parameter
 from rtfx.dsp.glide import TARGET, VALUE, WORDS
 from rtfx.patch.model import Patch
 
+LINE = 8
+"""Doubles in a cache line."""
+
 
 @dataclass(frozen=True)
 class Slot:
@@ -33,6 +36,15 @@ def slots(patch: Patch) -> tuple[Slot, ...]:
     found = [(b, p) for b in patch.blocks for p in b.kind.numbers if not p.fixed]
     found.sort(key=lambda pair: pair[1].taper == "log")
     return tuple(Slot(f"{b.name}.{p.name}", i, p, b.values[p.name], p.low, p.high) for i, (b, p) in enumerate(found))
+
+
+def on_a_line(content: np.ndarray) -> np.ndarray:
+    """Return a copy of *content* (float64) that begins on a cache line, so that no vector lies across two."""
+    room = np.empty(content.size + LINE)
+    start = (-room.ctypes.data // 8) % LINE
+    copy = room[start : start + content.size]
+    copy[:] = content
+    return copy
 
 
 def parameter_words(slots: tuple[Slot, ...]) -> np.ndarray:
@@ -59,11 +71,15 @@ class Storage:
         return len(self.names) - 1
 
     def memory(self, content: np.ndarray | int) -> int:
-        """Give out a piece of memory with this first content (an int: so many zeros); returns its offset."""
+        """Give out a piece of memory with this first content (an int: so many zeros); returns its offset.
+
+        Each piece begins on a cache line of its own.
+        """
         piece = np.zeros(content) if isinstance(content, int) else np.asarray(content, float)
-        self.pieces.append(piece)
-        self.size += len(piece)
-        return self.size - len(piece)
+        start, filled = self.size, -(-len(piece) // LINE) * LINE
+        self.pieces.append(np.concatenate([piece, np.zeros(filled - len(piece))]))
+        self.size += filled
+        return start
 
     def images(self) -> tuple[np.ndarray, np.ndarray]:
         """Return the first content of state and memory."""

@@ -11,6 +11,7 @@ import numpy as np
 
 from rtfx.compiler import build
 from rtfx.compiler.driver import Plan, plan
+from rtfx.compiler.layout import on_a_line
 from rtfx.dsp.glide import WORDS
 from rtfx.patch.model import Patch
 
@@ -91,7 +92,7 @@ class Instance:
         self.built = plan.build()
         self.words = np.array([self.built.address], np.int64)
         self.parameters = plan.parameters()
-        self.state, self.memory = plan.state.copy(), plan.memory.copy()
+        self.state, self.memory = plan.state.copy(), on_a_line(plan.memory)
         self.scratch = np.empty((CHUNK, 2))
         self._drive = _driver()[1]
 

@@ -26,7 +26,7 @@ class Stage:
 
     The lowest stage has one sample a frame.  It runs in transposed form; its memory is: taps twice over, a 0-or-1 for
     each sum twice over, the running sums, a ring for the plain delay.  The others take all their samples of a frame
-    at once (rtfx.native.windows); their memory is: taps, and the past.
+    at once (rtfx.native.windows); their memory is: the past, and the taps.
     """
 
     length: int
@@ -64,7 +64,7 @@ class Stage:
         past = past_size(self.taps - 1, self.many)
         if way == "down":
             past += past_size(self.late("down"), self.many)
-        return np.concatenate([taps, np.zeros(past)])
+        return np.concatenate([np.zeros(past), taps])
 
     def call(self, way):
         """Return the function that does it, and what it is given between its memory and its samples."""

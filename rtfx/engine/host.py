@@ -9,6 +9,7 @@ from __future__ import annotations
 import numpy as np
 
 from rtfx.compiler.build import Built
+from rtfx.compiler.layout import on_a_line
 from rtfx.engine import words as w
 from rtfx.engine.layout import OFFSET, Shared
 from rtfx.engine.native import callback, release_store
@@ -19,7 +20,7 @@ class Graph:
 
     def __init__(self, built: Built, number: int, parameters, state, memory, count: int, first_log: int) -> None:
         self.built, self.number = built, number
-        self.arrays = [np.array(a, np.float64) for a in (parameters, state, memory)]
+        self.arrays = [on_a_line(np.asarray(a, np.float64)) for a in (parameters, state, memory)]
         self.first = (parameters, state, memory)
         self.record = np.zeros(w.GRAPH_WORDS, np.int64)
         self.record[w.KERNEL] = built.address

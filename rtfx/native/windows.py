@@ -123,9 +123,9 @@ def _up_many(typing_context, memory, at, taps, late, many, clock, low, high):
     def generate(context, builder, signature, args):
         base, at, _, _, _, clock, low, high = args
         v = _Vectors(builder, base, width)
-        line = builder.add(at, ir.Constant(_I64, t))
-        vectors = v.history(v.gather(low), line, vectors_back(t - 1, width), clock)
-        even, odd = v.filtered(vectors, at, t), v.window(vectors, behind)
+        vectors = v.history(v.gather(low), at, vectors_back(t - 1, width), clock)
+        taps_at = builder.add(at, ir.Constant(_I64, past_size(t - 1, width)))
+        even, odd = v.filtered(vectors, taps_at, t), v.window(vectors, behind)
         both = v.cut(even, odd, [i // 2 + (i % 2) * width for i in range(2 * width)])
         v.store(both, high, width=2 * width)
         return context.get_dummy_value()
@@ -144,12 +144,12 @@ def _down_many(typing_context, memory, at, taps, late, many, clock, high, low):
         base, at, _, _, _, clock, high, low = args
         v = _Vectors(builder, base, width)
         even, odd = v.gather(high, 0, 2), v.gather(high, 1, 2)
-        line = builder.add(at, ir.Constant(_I64, t))
-        evens = v.history(even, line, vectors_back(t - 1, width), clock)
-        odd_line = builder.add(line, ir.Constant(_I64, past_size(t - 1, width)))
-        odds = v.history(odd, odd_line, vectors_back(behind, width), clock)
+        evens = v.history(even, at, vectors_back(t - 1, width), clock)
+        odd_at = builder.add(at, ir.Constant(_I64, past_size(t - 1, width)))
+        odds = v.history(odd, odd_at, vectors_back(behind, width), clock)
+        taps_at = builder.add(odd_at, ir.Constant(_I64, past_size(behind, width)))
         plain = builder.fmul(v.everywhere(ir.Constant(_DOUBLE, 0.5)), v.window(odds, behind))
-        v.store(builder.fadd(v.filtered(evens, at, t), plain), low)
+        v.store(builder.fadd(v.filtered(evens, taps_at, t), plain), low)
         return context.get_dummy_value()
 
     return signature, generate
@@ -171,26 +171,27 @@ def _filtered_in_python(samples, memory, at, taps, many, j):
 
 def _up_in_python(memory, at, taps, late, many, clock, low, high):
     newest = [memory[low + j] for j in range(many)]
-    samples = _history_in_python(newest, memory, at + taps, taps - 1, clock)
+    samples = _history_in_python(newest, memory, at, taps - 1, clock)
+    taps_at = at + past_size(taps - 1, many)
     for j in range(many):
-        memory[high + 2 * j] = _filtered_in_python(samples, memory, at, taps, many, j)
+        memory[high + 2 * j] = _filtered_in_python(samples, memory, taps_at, taps, many, j)
         memory[high + 2 * j + 1] = samples[many - 1 - j + late]
 
 
 def _down_in_python(memory, at, taps, late, many, clock, high, low):
     evens = [memory[high + 2 * j] for j in range(many)]
     odds = [memory[high + 2 * j + 1] for j in range(many)]
-    evens = _history_in_python(evens, memory, at + taps, taps - 1, clock)
-    odds = _history_in_python(odds, memory, at + taps + past_size(taps - 1, many), late, clock)
+    odd_at = at + past_size(taps - 1, many)
+    evens, odds = (_history_in_python(*a, clock) for a in ((evens, memory, at, taps - 1), (odds, memory, odd_at, late)))
     for j in range(many):
-        filtered = _filtered_in_python(evens, memory, at, taps, many, j)
+        filtered = _filtered_in_python(evens, memory, odd_at + past_size(late, many), taps, many, j)
         memory[low + j] = filtered + 0.5 * odds[many - 1 - j + late]
 
 
 up_many = _up_in_python if config.DISABLE_JIT else _up_many
 """``up_many(memory, at, taps, late, many, clock, low, high)``: twice the rate, *many* samples at a time.
 
-memory[at:] holds the taps and then the past; the even outputs are filtered, the odd ones are the input *late*
+memory[at:] holds the past and then the taps; the even outputs are filtered, the odd ones are the input *late*
 samples earlier; *clock* counts the calls.  *taps*, *late* and *many* must be written as numbers where it is called.
 """
 down_many = _down_in_python if config.DISABLE_JIT else _down_many

@@ -16,6 +16,9 @@ _NO_START, _BY_NAME = 1, 4
 _DEATH_SIGNAL = 1
 
 
+_QUIET = ctypes.CFUNCTYPE(None, ctypes.c_char_p)(lambda message: None)
+
+
 def _die_with_parent():
     ctypes.CDLL(None).prctl(_DEATH_SIGNAL, signal.SIGTERM)
 
@@ -56,6 +59,8 @@ class JackServer:
 
     def _answers(self):
         jack = ctypes.CDLL("libjack.so.0")
+        jack.jack_set_error_function(_QUIET)
+        jack.jack_set_info_function(_QUIET)
         jack.jack_client_open.restype = ctypes.c_void_p
         jack.jack_client_close.argtypes = [ctypes.c_void_p]
         status = ctypes.c_int(0)
