@@ -20,6 +20,11 @@ from rtfx.takes.keep import Take, new_folder
 
 LOOK_S = 0.05
 JSON_S = 1.0
+WARNINGS = {
+    "resets": "the patch gave a number that is none; it was silenced and started afresh",
+    "dropped_frames": "the recording could not keep up; it has a hole",
+    "dropped_events": "a move came for a sound that was gone",
+}
 
 
 class Session:
@@ -37,6 +42,7 @@ class Session:
         self.saved = 0.0
         self.over = False
         self.built: Plan | None = None
+        self.warned: dict[str, int] = {}
         self.builder: threading.Thread | None = None
 
     def tell(self, sentence: str) -> None:
@@ -55,7 +61,8 @@ class Session:
                 self._loop(keys, screen)
         finally:
             if self.take is not None:
-                self.take.finish()
+                played = self.front.plan.patch.text if self.front.plan else ""
+                self.take.finish(played, [(g.frame, g.seconds) for g in self.front.gaps])
             self.front.close()
         if self.take is not None:
             where = self.take.folder
@@ -86,12 +93,22 @@ class Session:
             if self.take is not None:
                 self.take.write()
             facts = status(self.front)
+            self._warn(facts)
             screen.show(facts, self.messages)
             if self.as_json and time.monotonic() - said >= JSON_S:
                 said = time.monotonic()
                 print(json.dumps(facts), flush=True)
             self.over = self.over or (self.seconds is not None and facts["seconds"] >= self.seconds)
             self._obey(keys.pressed(LOOK_S))
+
+    def _warn(self, facts: dict) -> None:
+        """Say at once what a player should know about."""
+        for fact, sentence in WARNINGS.items():
+            if facts[fact] > self.warned.get(fact, 0):
+                self.tell(sentence)
+            self.warned[fact] = facts[fact]
+        if self.take is not None and self.take.fault and self.take.fault not in self.messages:
+            self.tell(self.take.fault)
 
     def _obey(self, key: str) -> None:
         if key == "m":

@@ -40,6 +40,14 @@ class Wish:
     speed: float = 1.0
 
 
+@dataclass(frozen=True)
+class Gap:
+    """A stretch without sound while the sound process was started again: after which frame, and how long."""
+
+    frame: int
+    seconds: float
+
+
 class Front:
     """Keeps one sound process playing one plan.  `tell` is called with a sentence whenever something happens."""
 
@@ -61,6 +69,8 @@ class Front:
         self.refusal = ""
         self.seen = (0, 0.0)
         self.values: list[float] = []
+        self.gaps: list[Gap] = []
+        self.lost = (0, 0.0)
         self._spawn()
 
     # The process
@@ -88,6 +98,7 @@ class Front:
         if fact["event"] == "playing":
             self.device, self.seen = fact["device"], (int(self.shared.get("BLOCKS")), time.monotonic())
             self.state = "playing"
+            self._note_gap()
             self.tell(f"playing on {self.device}")
         elif fact["event"] == "refused":
             self.refusal = fact["why"]
@@ -152,6 +163,7 @@ class Front:
 
     def _again(self, ended: bool) -> None:
         if self.state == "playing":
+            self.lost = (int(self.shared.get("FRAMES")), self.seen[1])
             self.tell("the sound process has ended" if ended else "the audio device has stopped answering")
             self.tell("starting again; the sound comes back by itself")
         elif self.state == "waiting":
@@ -163,6 +175,12 @@ class Front:
         if self.number:
             self._open()
         self.state = "waiting" if waiting else "starting"
+
+    def _note_gap(self) -> None:
+        frame, since = self.lost
+        if since:
+            self.gaps.append(Gap(frame, round(time.monotonic() - since, 3)))
+            self.lost = (0, 0.0)
 
     def _kill(self) -> None:
         assert self.process is not None

@@ -8,9 +8,12 @@ start of the take.  Wet is what the graph gives, before mute ramp and ceiling: t
 from __future__ import annotations
 
 import time
+from collections.abc import Iterable
+from importlib import metadata
 from pathlib import Path
 
 import numpy as np
+import tomli_w
 
 from rtfx.engine import queues
 from rtfx.engine.layout import Shared
@@ -38,6 +41,8 @@ class Take:
         self.folder, self.shared = folder, shared
         self.files = [_open(folder / "dry.wav", rate, 1), _open(folder / "wet.wav", rate, 2)]
         self.frames, self.fault, self.synced = 0, "", time.monotonic()
+        self.start = int(shared.get("FRAMES"))
+        self.rate = rate
         shared.set("AUDIO_TAIL", shared.get("AUDIO_HEAD"))
         shared.set("AUDIO_ON", 1)
 
@@ -62,12 +67,23 @@ class Take:
         for file in self.files:
             file.close()
 
-    def finish(self) -> None:
-        """Write the rest and close the files."""
+    def finish(self, patch: str, gaps: Iterable[tuple[int, float]] = ()) -> None:
+        """Write the rest, close the files, and write down what they are.
+
+        Parameters
+        ----------
+        patch : str
+            The text of the patch as played.
+        gaps : iterable of (int, float)
+            Frames of the stream after which nothing came for so many seconds.
+        """
         self.write()
         self.shared.set("AUDIO_ON", 0)
         if not self.fault:
             self._close()
+        marked = [{"frame": f - self.start, "seconds": s} for f, s in gaps if f >= self.start]
+        notes = {"rate": self.rate, "frames": self.frames, "rtfx": metadata.version("rtfx"), "gaps": marked}
+        (self.folder / "take.toml").write_text(tomli_w.dumps({**notes, "patch": patch}, multiline_strings=True))
 
 
 def new_folder(root: Path) -> Path:

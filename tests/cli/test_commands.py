@@ -122,3 +122,18 @@ def test_a_fault_of_our_own_is_kept_in_a_file_and_said_in_a_line(tmp_path, monke
     assert "fault of rtfx itself" in message
     assert "impossible" in next(tmp_path.rglob("fault-*.txt")).read_text()
     assert "Traceback" not in message
+
+
+def test_chosen_devices_are_remembered_and_the_rest_of_the_setup_is_kept(tmp_path, monkeypatch):
+    from rig.server import JackServer
+
+    monkeypatch.setenv("XDG_CONFIG_HOME", str(tmp_path))
+    path = tmp_path / "rtfx" / "setup.toml"
+    path.parent.mkdir()
+    path.write_text('[hall]\nname = "Small"\n')
+    with JackServer(128) as server:
+        for name, value in server.env.items():
+            monkeypatch.setenv(name, value)
+        listed = json.loads(run("setup", "devices", "--input", "system", "--json").stdout)
+    assert listed["remembered"] == {"input": "system"}
+    assert 'name = "Small"' in path.read_text()

@@ -3,10 +3,12 @@
 import os
 import signal
 import time
+import tomllib
 from pathlib import Path
 
 import psutil
 import pytest
+import soundfile
 from rig.program import Program
 from rig.server import JackServer
 
@@ -60,3 +62,18 @@ def test_front_killed_takes_the_sound_process_with_it():
         program.process.send_signal(signal.SIGKILL)
         sound.wait(2.0)
         assert set(os.listdir("/dev/shm")) <= before
+
+
+def test_a_take_goes_on_over_a_restart_with_the_gap_marked(tmp_path):
+    environment = os.environ | {"XDG_DATA_HOME": str(tmp_path)}
+    with Program(PRESET, "--device", "built-in", "--record", env=environment) as program:
+        program.until(lambda f: f.get("state") == "playing" and f["seconds"] > 1)
+        sound_process(program).kill()
+        program.until_message("playing on")
+        after = program.until(lambda f: f.get("restarts") == 1)["seconds"]
+        program.until(lambda f: f.get("seconds", 0) > after + 1)
+        assert program.end() == 0
+    folder = next((tmp_path / "rtfx" / "takes").iterdir())
+    (gap,) = tomllib.loads((folder / "take.toml").read_text())["gaps"]
+    assert 0 < gap["frame"] < soundfile.info(folder / "wet.wav").frames
+    assert 0 < gap["seconds"] < 3
