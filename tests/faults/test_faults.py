@@ -44,7 +44,7 @@ def test_server_killed_and_back_is_heard_again_by_itself():
     with JackServer(128) as server, Program(PRESET, "--device", "system", "--unmuted", env=server.env) as program:
         program.until(lambda f: f.get("gain") == 1.0)
         server.kill()
-        program.until_message("starting again", 1.5)
+        program.until_message("starting again", 1.0)
         time.sleep(2.0)
         server.start()
         back = time.monotonic()
