@@ -72,12 +72,20 @@ class Choice:
 
 
 @dataclass(frozen=True)
+class File:
+    """A parameter that names a file of the player's; in a patch its path is meant from the patch's own folder."""
+
+    name: str
+    about: str = ""
+
+
+@dataclass(frozen=True)
 class Setting:
     """What a kind knows of the place it is built for.
 
-    `choices` and `values` are as the patch says; `reach` is the lowest and highest value each parameter can come
-    to (its setting, its control's range, what follows it); `rate` (Hz) is the rate of the block itself; `quality`
-    is "stage" or "studio".
+    `choices` (with them the paths of files) and `values` are as the patch says; `reach` is the lowest and highest
+    value each parameter can come to (its setting, its control's range, what follows it); `rate` (Hz) is the rate of
+    the block itself; `quality` is "stage" or "studio".
     """
 
     choices: Mapping[str, str]
@@ -85,6 +93,8 @@ class Setting:
     reach: Mapping[str, tuple[float, float]]
     rate: float
     quality: str
+    tempo: float = 120.0
+    """Beats a minute."""
 
 
 @dataclass(frozen=True)
@@ -136,7 +146,7 @@ class Kind:
     name: str
     about: str
     ports: tuple[str, ...]
-    parameters: tuple[Parameter | Choice, ...]
+    parameters: tuple[Parameter | Choice | File, ...]
     law: str
     source: str
     build: Callable[[Setting], Code]
@@ -145,6 +155,7 @@ class Kind:
     linear: bool = True
     breaks_loops: bool = False
     base_rate_only: bool = False
+    gives: tuple[float, float] = (-1.0, 1.0)
     module: str = ""
 
     @property
@@ -157,6 +168,11 @@ class Kind:
         """The parameters that are choices, in declared order."""
         return tuple(p for p in self.parameters if isinstance(p, Choice))
 
+    @property
+    def files(self) -> tuple[File, ...]:
+        """The parameters that name files, in declared order."""
+        return tuple(p for p in self.parameters if isinstance(p, File))
+
 
 _declared: dict[str, Kind] = {}
 
@@ -168,12 +184,13 @@ def kind(
     law: str,
     source: str,
     ports: tuple[str, ...] = (),
-    parameters: tuple[Parameter | Choice, ...] = (),
+    parameters: tuple[Parameter | Choice | File, ...] = (),
     bandwidth: Bandwidth = unchanged,
     outputs: tuple[str, ...] = ("out",),
     linear: bool = True,
     breaks_loops: bool = False,
     base_rate_only: bool = False,
+    gives: tuple[float, float] = (-1.0, 1.0),
 ) -> Callable[[Callable[[Setting], Code]], Callable[[Setting], Code]]:
     """Declare a kind of block; the decorated function returns its `Code` for one `Setting`.
 
@@ -185,7 +202,7 @@ def kind(
         What it does to the sound; its formula; where the formula is published.
     ports : tuple of str
         Audio inputs; one is called "x", a second "y".
-    parameters : tuple of Parameter and Choice
+    parameters : tuple of Parameter, Choice and File
     bandwidth : callable
         How wide the output is: see `Bandwidth`, and `unchanged`, `product`, `order`.
     outputs : tuple of str
@@ -196,6 +213,8 @@ def kind(
         True if its output depends on earlier inputs only (it has an `emerge`).
     base_rate_only : bool
         True if it is never run oversampled.
+    gives : tuple of float
+        Lowest and highest value of its outputs, as far as what follows them must count with.
 
     Raises
     ------
@@ -209,7 +228,7 @@ def kind(
             raise ValueError(f"kind '{name}' of {build.__module__} is already declared by {taken.module}")
         _declared[name] = Kind(
             name, about, ports, parameters, law, source, build, bandwidth, outputs, linear, breaks_loops,
-            base_rate_only, build.__module__,
+            base_rate_only, gives, build.__module__,
         )  # fmt: skip
         return build
 

@@ -13,11 +13,13 @@ app = typer.Typer()
 
 def facts_of(kind) -> dict:
     """Return what there is to know about a kind, ready for JSON."""
-    from rtfx.blocks.kind import Choice
+    from rtfx.blocks.kind import Choice, File
 
     def facts(p) -> dict:
         if isinstance(p, Choice):
             return {"name": p.name, "choices": list(p.choices), "default": p.default, "about": p.about}
+        if isinstance(p, File):
+            return {"name": p.name, "file": True, "about": p.about}
         about = {"about": p.about, "taper": p.taper, "fixed": p.fixed}
         return {"name": p.name, "unit": p.unit, "low": p.low, "high": p.high, "default": p.default} | about
 
@@ -60,6 +62,9 @@ def _show_one(facts: dict) -> None:
     for title in ("parameter", "range", "scale", "unless given", "what it is"):
         table.add_column(title)
     for p in facts["parameters"]:
+        if "file" in p:
+            table.add_row(p["name"], "a file", "fixed", "–", p["about"])
+            continue
         reach = " | ".join(p["choices"]) if "choices" in p else f"{p['low']:g} to {p['high']:g} {p['unit']}".strip()
         default = p["default"] if "choices" in p else f"{p['default']:g} {p['unit']}".strip()
         scale = "" if "choices" in p else "fixed" if p["fixed"] else p["taper"]

@@ -88,9 +88,9 @@ class _Aligning:
         for port, wire in block.wires.items():
             back = wire.block in loop and (wire.block not in self.arrival or self._breaks(wire.block))
             arrivals[port] = None if back else self._at(wire, name)
-        for follow in block.follows.values():
-            if follow.wire.block in self.arrival:
-                self._at_base(follow.wire)
+        for wire in (w for follow in block.follows.values() for w in follow.wires):
+            if wire.block in self.arrival:
+                self._at_base(wire)
         known = [a for a in [*arrivals.values(), floor] if a is not None]
         meet = max(known, default=None)
         for port, arrival in arrivals.items():

@@ -24,7 +24,7 @@ class Graph:
         self.patch = patch
         self.names = tuple(b.name for b in patch.blocks)
         self.ports = {b.name: {w.block for w in b.wires.values()} - {INPUT} for b in patch.blocks}
-        self.follows = {b.name: {f.wire.block for f in b.follows.values()} - {INPUT} for b in patch.blocks}
+        self.follows = {b.name: {w.block for f in b.follows.values() for w in f.wires} - {INPUT} for b in patch.blocks}
         self.feeds = {n: self.ports[n] | self.follows[n] for n in self.names}
 
     @cached_property

@@ -88,10 +88,12 @@ class Lines:
         follow = block.follows.get(parameter.name)
         if follow is None:
             return value
-        octaves, bounded = self.names.function(glides.octaves), self.names.function(glides.bounded)
-        amount = f"{follow.depth!r} * {self._followed(follow.wire, block)}"
-        moved = f"{octaves}({value}, {amount})" if slot.log else f"{value} + {amount}"
-        return f"{bounded}({moved}, {parameter.low!r}, {parameter.high!r})"
+        if follow.base is not None:
+            value = f"{follow.ratio!r} * {self._followed(follow.base, block)}"
+        if follow.wire is not None:
+            amount = f"{follow.depth!r} * {self._followed(follow.wire, block)}"
+            value = f"{self.names.function(glides.octaves)}({value}, {amount})" if slot.log else f"{value} + {amount}"
+        return f"{self.names.function(glides.bounded)}({value}, {parameter.low!r}, {parameter.high!r})"
 
     def _followed(self, wire: Wire, block: Placed) -> str:
         region_of = self.of.widths.region_of

@@ -40,7 +40,7 @@ class _Raised:
     # What crosses the border
 
     def _follows_within(self, block: Placed) -> bool:
-        return any(f.wire.block in self.region.blocks for f in block.follows.values())
+        return any(w.block in self.region.blocks for f in block.follows.values() for w in f.wires)
 
     def _entering(self) -> list[Wire]:
         wires = [b.wires[port] for b in self.blocks for port in b.kind.ports]
@@ -51,7 +51,7 @@ class _Raised:
         used = [patch.left, patch.right]
         for block in patch.blocks:
             if block.name not in inside:
-                used += [*block.wires.values(), *(f.wire for f in block.follows.values())]
+                used += [*block.wires.values(), *(w for f in block.follows.values() for w in f.wires)]
         return list(dict.fromkeys(w for w in used if w.block in inside))
 
     def _raise(self, wire: Wire) -> int:

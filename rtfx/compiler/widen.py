@@ -93,7 +93,7 @@ class _Widening:
 
         block = self.block[name]
         inputs = {port: arriving(wire.block) for port, wire in block.wires.items()}
-        moved = sum(arriving(follow.wire.block) for follow in block.follows.values())
+        moved = sum(arriving(w.block) for follow in block.follows.values() for w in follow.wires)
         return block.kind.bandwidth(self.setting[name], inputs) + moved
 
     def _widths_within(self, group: Iterable[str], rounds: int = 1) -> dict[str, float]:

@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from typing import Any
 
-from rtfx.blocks.kind import Choice, Kind, Parameter
+from rtfx.blocks.kind import Choice, File, Kind, Parameter
 from rtfx.patch.errors import shown
 from rtfx.patch.lines import line_of
 from rtfx.patch.model import INPUT, Follow, Placed, Wire
@@ -12,8 +13,9 @@ from rtfx.patch.reader import Reader
 from rtfx.patch.units import depth
 from rtfx.patch.wires import read_wire
 
-_FOLLOW = ("base", "add", "depth")
-_WANTED = '{ base = …, add = "block", depth = … }'
+_FOLLOW = ("base", "ratio", "add", "depth")
+_WANTED = '{ base = …, add = "block", depth = … } or { base = "block", ratio = "3/2" }'
+_RATIO = Parameter("ratio", "ratio", 1 / 64, 64.0, 1.0)
 
 
 def read_block(reader: Reader, name: str, kind: Kind, entry: dict[str, Any]) -> Placed:
@@ -25,9 +27,11 @@ def read_block(reader: Reader, name: str, kind: Kind, entry: dict[str, Any]) -> 
     choices: dict[str, str] = {}
     follows: dict[str, Follow] = {}
     for p in kind.parameters:
-        found = entry.get(p.name, p.default)
+        found = entry.get(p.name, None if isinstance(p, File) else p.default)
         if isinstance(p, Choice):
             choices[p.name] = reader.choice(p, found, (*where, p.name), name)
+        elif isinstance(p, File):
+            choices[p.name] = reader.file(p, found, (*where, p.name), name)
         elif isinstance(found, dict):
             values[p.name], follows[p.name] = _following(reader, name, p, found)
         else:
@@ -44,19 +48,24 @@ def _port(reader: Reader, name: str, entry: dict[str, Any], port: str) -> Wire:
 
 
 def _following(reader: Reader, name: str, parameter: Parameter, found: dict[str, Any]) -> tuple[float, Follow]:
-    """Read { base = …, add = "block", depth = … }."""
+    """Read { base = …, add = "block", depth = … }; with a ratio the base is a block too."""
     label, where = parameter.name, ("blocks", name, parameter.name)
     reader.check_keys(found, _FOLLOW, where, f"key of {label}", name)
     if parameter.fixed:
         message = f"{label} is fixed when the patch is built: it cannot follow a signal. Give it a plain value."
         reader.fault(message, where, name)
-    for key in ("add", "depth"):
-        if key not in found:
-            reader.fault(f"{label}: {shown(key)} is missing; wanted {_WANTED}", where, name)
-    base = found.get("base", parameter.default)
-    value = reader.value(parameter, base, (*where, "base"), name, f"{label}: base")
-    wire = read_wire(reader, found["add"], f"{label}: add", (*where, "add"), name) if "add" in found else Wire(INPUT)
-    return value, Follow(wire, _depth(reader, name, parameter, found))
+    if "ratio" not in found or "add" in found or "depth" in found:
+        for key in ("add", "depth"):
+            if key not in found:
+                reader.fault(f"{label}: {shown(key)} is missing; wanted {_WANTED}", where, name)
+    wire = read_wire(reader, found["add"], f"{label}: add", (*where, "add"), name) if "add" in found else None
+    moved = Follow(wire, _depth(reader, name, parameter, found))
+    if "ratio" not in found:
+        base = found.get("base", parameter.default)
+        return reader.value(parameter, base, (*where, "base"), name, f"{label}: base"), moved
+    source = read_wire(reader, found.get("base"), f"{label}: base", (*where, "base"), name)
+    ratio = reader.value(_RATIO, found["ratio"], (*where, "ratio"), name, f"{label}: ratio")
+    return parameter.default, replace(moved, base=source, ratio=ratio)
 
 
 def _depth(reader: Reader, name: str, parameter: Parameter, found: dict[str, Any]) -> float:

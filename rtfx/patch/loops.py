@@ -25,7 +25,7 @@ def check_loops(reader: Reader, blocks: tuple[Placed, ...]) -> None:
 def _immediate(block: Placed) -> list[str]:
     """Blocks whose present sample this block needs for its own."""
     ports = [] if block.kind.breaks_loops else [wire.block for wire in block.wires.values()]
-    return [*ports, *(follow.wire.block for follow in block.follows.values())]
+    return [*ports, *(wire.block for follow in block.follows.values() for wire in follow.wires)]
 
 
 def _way_back(start: str, feeds: dict[str, list[str]]) -> list[str]:

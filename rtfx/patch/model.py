@@ -21,13 +21,21 @@ class Wire:
 
 @dataclass(frozen=True)
 class Follow:
-    """A parameter's value plus a signal: value + depth · signal, on the parameter's own scale.
+    """What a parameter follows: ratio · base in place of its own value, and on top of it depth · wire.
 
-    `depth` is in the parameter's unit; on a log taper in octaves.
+    `base` gives values in the parameter's unit (a tracker's pitch).  `depth` is in the parameter's unit, on a log
+    taper in octaves.  Either may be missing.
     """
 
-    wire: Wire
-    depth: float
+    wire: Wire | None = None
+    depth: float = 0.0
+    base: Wire | None = None
+    ratio: float = 1.0
+
+    @property
+    def wires(self) -> tuple[Wire, ...]:
+        """All that is followed."""
+        return tuple(w for w in (self.base, self.wire) if w is not None)
 
 
 @dataclass(frozen=True)

@@ -6,7 +6,7 @@ from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
-from rtfx.blocks.kind import Choice
+from rtfx.blocks.kind import Choice, File
 from rtfx.patch.blockread import read_block
 from rtfx.patch.controls import read_controls
 from rtfx.patch.errors import PatchError, shown, suggestion
@@ -90,6 +90,8 @@ def _with_value(reader: Reader, patch: Patch, target: str, found: str | float) -
         return None
     block, parameter = named[target]
     name = parameter.name
+    if isinstance(parameter, File):
+        return replace(block, choices={**block.choices, name: reader.file(parameter, found, block=block.name)})
     if isinstance(parameter, Choice):
         return replace(block, choices={**block.choices, name: reader.choice(parameter, found, block=block.name)})
     return replace(block, values={**block.values, name: reader.value(parameter, found, block=block.name)})

@@ -6,10 +6,11 @@ A check that fails notes a fault and returns something harmless, so that reading
 from __future__ import annotations
 
 import math
+import pathlib
 from collections.abc import Iterable, Mapping
 from typing import Any
 
-from rtfx.blocks.kind import Choice, Kind, Parameter
+from rtfx.blocks.kind import Choice, File, Kind, Parameter
 from rtfx.patch.errors import Fault, shown, suggestion
 from rtfx.patch.lines import Path, key_lines, line_of
 from rtfx.patch.units import Quantity, number, quantity
@@ -91,6 +92,17 @@ class Reader:
         hint = suggestion(str(found) if isinstance(found, str) else "", choice.choices)
         self.fault(f"{choice.name} = {shown(found)} is not known.{hint}", where, block)
         return choice.default
+
+    def file(self, file: File, found: object, where: Path = (), block: str = "") -> str:
+        """Return the whole path of the file that *found* names, from the folder of the patch."""
+        if not isinstance(found, str) or not found.strip():
+            problem = f"{shown(file.name)} is missing" if found is None else f"{file.name} = {shown(found)}"
+            self.fault(f'{problem}; wanted the path of a file, as {file.name} = "room.wav"', where, block)
+            return ""
+        path = pathlib.Path(self.path).parent / found
+        if not path.is_file():
+            self.fault(f"{file.name} = {shown(found)}: there is no file {shown(str(path))}", where, block)
+        return str(path)
 
 
 def _beyond(read: Quantity, parameter: Parameter, label: str) -> str:

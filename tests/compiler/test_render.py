@@ -195,3 +195,15 @@ right = "shape"
     assert np.array_equal(whole, rtfx.render(plan, noise[:4800], block=7))
     assert len(plan.regions) == 1
     assert np.array_equal(rtfx.render(one("clip", drive=24), noise[:4700])[:, 1], whole[:4700, 1])
+
+
+def test_a_parameter_may_take_its_value_from_a_signal_at_a_ratio():
+    """A control signal in place of the value: here the guitar input itself, 0.4 times 3/2 being the amount."""
+    patch = text(
+        '[blocks.tone]\nkind = "oscillator"\npitch = 100\n[blocks.quiet]\nkind = "gain"\nx = "tone"\nlevel = -80\n'
+        '[blocks.blend]\nkind = "mix"\ndry = "quiet"\nwet = "tone"\namount = { base = "input", ratio = "3/2" }\n'
+        '[output]\nfrom = "blend"\n'
+    )
+    out = rtfx.render(patch, np.full(4800, 0.4))[:, 0].astype(float)
+    tone = np.sin(2 * np.pi * 100 * np.arange(4800) / 48_000)
+    assert np.abs(out - 0.6 * tone).max() < 1e-4
