@@ -1,12 +1,30 @@
 """Short patches for tests."""
 
+import tempfile
+from functools import cache
+from pathlib import Path
+
+import numpy as np
+import soundfile
+
 import rtfx
+from rtfx.blocks.table import find
 
 HEAD = 'name = "test"\nabout = "for a test"\n'
 
 
+@cache
+def response_file(taps=3000, channels=2, rate=48_000):
+    """Return the path of a WAV with a decaying noise of so many taps, for kinds that want a file."""
+    path = Path(tempfile.mkdtemp(prefix="rtfx-test-")) / "response.wav"
+    sound = np.random.default_rng(2).standard_normal((taps, channels)) * np.exp(-6 * np.arange(taps) / taps)[:, None]
+    soundfile.write(path, sound, rate, subtype="DOUBLE")
+    return str(path)
+
+
 def one(kind, *, wires=("x",), **parameters):
     """Return a patch of a single block of *kind*, the guitar on all its *wires*."""
+    parameters = {f.name: response_file() for f in find(kind).files} | parameters
     lines = [f'kind = "{kind}"', *(f'{w} = "input"' for w in wires)]
     lines += [f"{k} = {v!r}".replace("'", '"') for k, v in parameters.items()]
     return rtfx.loads(HEAD + "[blocks.only]\n" + "\n".join(lines) + '\n[output]\nfrom = "only"\n')

@@ -79,7 +79,7 @@ def write(text: str, images: tuple[np.ndarray, ...] = (), heading: str = "") -> 
 def load_module(path: Path) -> ModuleType:
     """Import the module at *path* under its own name, which numba needs to find it again."""
     name = path.stem
-    if name not in sys.modules:
+    if name not in sys.modules or sys.modules[name].__file__ != str(path):
         if str(path.parent) not in sys.path:
             sys.path.append(str(path.parent))
         spec = importlib.util.spec_from_file_location(name, path)
