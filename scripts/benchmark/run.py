@@ -4,6 +4,7 @@ import argparse
 import json
 
 import hog
+import kinds
 import timing
 
 TARGETS = {"c": 1.15, "balanced": 3, "driven_balanced": 20, "six_blocks": 20, "overhead_us": 3.0}
@@ -19,6 +20,12 @@ def show(results):
         ratios = (f"{native / c:.2f}", f"≤ {TARGETS['c']}", f"{chain / native:.1f}", f"≥ {TARGETS[r['name']]}")
         print(row.format(r["name"], f"{native:.1f}", f"{c:.1f}", f"{chain:.1f}", *ratios))
     print(f"\nthe engine adds {results['overhead_us']} us a block (wanted ≤ {TARGETS['overhead_us']})")
+    print("\nns a sample of each kind: at the base rate, and as it usually runs")
+    for r in results["kinds"]:
+        print(f"{r['kind']:20}{r['base_ns']:9.1f}{r['usual_ns']:9.1f}  {r['factor']}×")
+    print("\npresets at 48 kHz: ns a sample, and share of one core (wanted ≤ 25 %)")
+    for r in results["presets"]:
+        print(f"{r['preset']:20}{r['ns']:9.1f}{r['percent']:8.2f} %")
     if "callback" in results:
         print("\ncallbacks missed at 64 frames on JACK's dummy device, a Python loop keeping the interpreter busy")
         for label, text in (("idle", "native, no loop"), ("native", "native"), ("python", "ordinary Python")):
@@ -32,6 +39,8 @@ def main():
     parser.add_argument("--seconds", type=float, default=30.0, help="how long each callback is watched; 0: not at all")
     options = parser.parse_args()
     results = {"graphs": timing.graphs(), "overhead_us": timing.overhead_us()}
+    sound = timing.guitar()
+    results |= {"kinds": kinds.kinds(sound), "presets": kinds.presets(sound)}
     if options.seconds:
         results["callback"] = hog.compare(options.seconds)
     if options.json:
