@@ -80,9 +80,25 @@ def _show(facts: dict) -> None:
     console.print(f"about {facts['cost_ns']:.0f} ns a sample here: {load:.2f} % of one core")
 
 
+def _check_sections(path: Path, rate: float, quality: str, as_json: bool) -> None:
+    """Validate a song or a set, and list its sections."""
+    from rtfx.compiler.driver import plan
+    from rtfx.patch.song import kind_of_file, load_set, load_song
+
+    songs = load_set(path).songs if kind_of_file(path) == "set" else (load_song(path),)
+    rows = [(song, section, plan(section.patch, rate, quality)) for song in songs for section in song.sections]
+    if as_json:
+        facts = [{"song": so.name, "section": se.name, "patch": se.patch.name, "delay": p.delay} for so, se, p in rows]
+        print(json.dumps({"sections": facts}))
+        return
+    for song, section, worked_out in rows:
+        delay = 1000 * worked_out.delay / rate
+        print(f"{song.name:20} {section.name:16} {section.patch.name:20} delay {delay:.2f} ms")
+
+
 @app.command()
 def check(
-    patch: Annotated[Path, typer.Argument(help="patch file")],
+    patch: Annotated[Path, typer.Argument(help="patch, song or set file")],
     rate: Annotated[float, typer.Option(help="sample rate in Hz")] = 48_000.0,
     quality: Annotated[str, typer.Option(help="stage or studio")] = "stage",
     set_: Annotated[list[str] | None, typer.Option("--set", help="block.param=value, may be repeated")] = None,
@@ -92,7 +108,11 @@ def check(
     """Validate a patch and explain what it becomes."""
     from rtfx.cli.common import load_with
     from rtfx.compiler.driver import plan
+    from rtfx.patch.song import kind_of_file
 
+    if kind_of_file(patch) != "patch":
+        _check_sections(patch, rate, quality, as_json)
+        return
     worked_out = plan(load_with(patch, set_), rate, quality)
     if source:
         print(worked_out.write().read_text())
