@@ -103,6 +103,7 @@ class Code:
 
     `state` maps a name to its first value; an int stays an int (a position), a float a float.  `memory` is the
     first content of the block's own memory.  `delay` is the block's own latency in samples at its own rate.
+    `shows` names states that a player may want to see while playing (a tracker's pitch).
     """
 
     tick: Callable[..., Any]
@@ -113,6 +114,7 @@ class Code:
     state: Mapping[str, float | int] = field(default_factory=dict)
     memory: np.ndarray | None = None
     delay: int = 0
+    shows: tuple[str, ...] = ()
 
 
 Bandwidth = Callable[[Setting, Mapping[str, float]], float]

@@ -9,7 +9,7 @@ import numpy as np
 
 from rtfx.compiler import build
 from rtfx.compiler.align import align
-from rtfx.compiler.emit import emit
+from rtfx.compiler.emit import Shown, emit
 from rtfx.compiler.graph import heard
 from rtfx.compiler.layout import Slot, parameter_words, slots
 from rtfx.compiler.lines import Passes
@@ -41,6 +41,7 @@ class Plan:
     source: str
     state: np.ndarray
     memory: np.ndarray
+    shows: tuple[Shown, ...]
 
     def parameters(self) -> np.ndarray:
         """Return the parameters at their first values, as the kernel wants them."""
@@ -97,5 +98,5 @@ def plan(patch: Patch, rate: float = 48_000.0, quality: str = "stage") -> Plan:
     emitted = emit(Passes(patch, widths, codes, alignment, schedule, found, rate, quality))
     return Plan(
         patch, rate, quality, schedule.blocks(), widths.regions, widths.width_hz, alignment.delay, found,
-        emitted.source, emitted.state, emitted.memory,
+        emitted.source, emitted.state, emitted.memory, emitted.shows,
     )  # fmt: skip

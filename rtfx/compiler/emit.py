@@ -21,12 +21,22 @@ from rtfx.patch.model import Placed
 
 
 @dataclass(frozen=True)
+class Shown:
+    """A state that a player may want to see: its block, its name, and its place in the state."""
+
+    block: str
+    name: str
+    index: int
+
+
+@dataclass(frozen=True)
 class Emitted:
     """The source of the kernel, as a text with "{kernel}" where its name goes, and the first state and memory."""
 
     source: str
     state: np.ndarray
     memory: np.ndarray
+    shows: tuple[Shown, ...]
 
 
 def emit(passes: Passes) -> Emitted:
@@ -43,7 +53,17 @@ def emit(passes: Passes) -> Emitted:
     for block in lines.loop_breakers(None):
         lines.call(block, lines.inputs(block, lines.base, BODY), BODY)
     state, memory = lines.storage.images()
-    return Emitted(_text(lines), state, memory)
+    return Emitted(_text(lines), state, memory, _shows(lines))
+
+
+def _shows(lines: Lines) -> tuple[Shown, ...]:
+    """Find the states that blocks want to be seen."""
+    return tuple(
+        Shown(name, state, lines.storage.names.index(variable))
+        for name, variables in lines.states.items()
+        for state, variable in zip(lines.of.codes[name].state, variables, strict=True)
+        if state in lines.of.codes[name].shows
+    )
 
 
 def _write_block(lines: Lines, block: Placed) -> None:

@@ -25,7 +25,7 @@ def save(plan: Plan) -> str:
     return str(built.path)
 
 
-def load(path: str, number: int, parameters: list[float], first_log: int) -> Graph:
+def load(path: str, number: int, parameters: list[float], first_log: int, shown: list[int] | None = None) -> Graph:
     """Return the graph at *path* with its parameters standing at *parameters*."""
     source = Path(path)
     with np.load(source.with_suffix(".npz")) as images:
@@ -33,4 +33,4 @@ def load(path: str, number: int, parameters: list[float], first_log: int) -> Gra
     words = np.zeros(max(4 * len(parameters), 1))
     words[0 : 4 * len(parameters) : 4] = words[1 : 4 * len(parameters) : 4] = parameters
     built = compile_at(source, KERNEL_SIGNATURE)
-    return Graph(built, number, words, state, memory, len(parameters), first_log)
+    return Graph(built, number, words, state, memory, len(parameters), first_log, shown or [])

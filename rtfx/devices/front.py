@@ -20,6 +20,7 @@ from dataclasses import dataclass
 from rtfx.compiler.driver import Plan
 from rtfx.devices.artifact import save
 from rtfx.engine import queues, share
+from rtfx.engine.layout import PARAMETERS, SHOWN
 
 STUCK_S = 0.6
 """No callback for this long while playing: the device is gone."""
@@ -121,10 +122,19 @@ class Front:
     def _graph(self) -> dict:
         assert self.plan is not None
         linear = sum(not s.log for s in self.plan.slots)
-        return {"path": self.path, "number": self.number, "parameters": self.values, "first_log": linear}
+        shown = [s.index for s in self.plan.shows][:SHOWN]
+        return {
+            "path": self.path,
+            "number": self.number,
+            "parameters": self.values,
+            "first_log": linear,
+            "shown": shown,
+        }
 
     def play(self, plan: Plan) -> None:
         """Let *plan* be heard: at once on the first call, by a crossfade later on."""
+        if len(plan.slots) > PARAMETERS:
+            raise ValueError(f"the patch has {len(plan.slots)} parameters; live it may have {PARAMETERS}")
         self.path = save(plan)
         self.plan, self.number = plan, self.number + 1
         self.plans[self.number] = plan

@@ -55,7 +55,7 @@ _GRAPH, _FADING, _LAST, _LOAD = OFFSET["GRAPH"], OFFSET["FADING"], OFFSET["LAST_
 _GAIN, _LIMIT, _WET, _PEAK, _SQUARE = (
     OFFSET["GAIN"], OFFSET["LIMIT_GAIN"], OFFSET["WET"], OFFSET["PEAK"], OFFSET["SQUARE"],
 )  # fmt: skip
-_VALUES = OFFSET["VALUES"]
+_VALUES, _SHOWN = OFFSET["VALUES"], OFFSET["SHOWN"]
 _QUEUES = (OFFSET["EVENTS"], OFFSET["EVENTS_HEAD"], OFFSET["EVENTS_TAIL"])
 _HAND_QUEUES = (OFFSET["HAND_EVENTS"], OFFSET["HAND_EVENTS_HEAD"], OFFSET["HAND_EVENTS_TAIL"])
 _XRUN_FLAGS = 0xF  # input under- and overflow, output under- and overflow; priming is none
@@ -225,6 +225,9 @@ def publish(words, own, shared, floats):
     p = load_f64p(record, w.PARAMETERS)
     for i in range(record[w.COUNT]):
         floats[_VALUES + i] = p[WORDS * i]
+    state, shown = load_f64p(record, w.STATE), load_i64p(record, w.SHOWN)
+    for i in range(record[w.SHOWN_COUNT]):
+        floats[_SHOWN + i] = state[shown[i]]
     for i in range(3):
         floats[_PEAK + i] = own[w.METERS + i]
         floats[_SQUARE + i] = own[w.METERS + 3 + i]

@@ -18,14 +18,18 @@ from rtfx.engine.native import callback, release_store
 class Graph:
     """One copy of a built patch in this process, and its record for the callback."""
 
-    def __init__(self, built: Built, number: int, parameters, state, memory, count: int, first_log: int) -> None:
+    def __init__(
+        self, built: Built, number: int, parameters, state, memory, count: int, first_log: int, shown=()
+    ) -> None:
         self.built, self.number = built, number
         self.arrays = [on_a_line(np.asarray(a, np.float64)) for a in (parameters, state, memory)]
         self.first = (parameters, state, memory)
+        self.shown = np.array([*shown, 0], np.int64)
         self.record = np.zeros(w.GRAPH_WORDS, np.int64)
         self.record[w.KERNEL] = built.address
         self.record[w.PARAMETERS : w.MEMORY + 1] = [a.ctypes.data for a in self.arrays]
         self.record[w.NUMBER], self.record[w.COUNT], self.record[w.FIRST_LOG] = number, count, first_log
+        self.record[w.SHOWN], self.record[w.SHOWN_COUNT] = self.shown.ctypes.data, len(shown)
 
     @property
     def address(self) -> int:
@@ -39,7 +43,8 @@ class Graph:
             parameters[:, 0], parameters[:, 3] = parameters[:, 1], 0.0
         _, state, memory = self.first
         count, first_log = int(self.record[w.COUNT]), int(self.record[w.FIRST_LOG])
-        return Graph(self.built, self.number, parameters.ravel(), state, memory, count, first_log)
+        shown = self.shown[:-1].tolist()
+        return Graph(self.built, self.number, parameters.ravel(), state, memory, count, first_log, shown)
 
 
 class Host:

@@ -16,6 +16,8 @@ import numpy as np
 
 PARAMETERS = 256
 """Most moving parameters a patch may have."""
+SHOWN = 32
+"""Most states that are shown."""
 EVENTS = 1024
 EVENT_WORDS = 4  # frame, graph, slot, value
 AUDIO_FRAMES = 1 << 20
@@ -72,6 +74,7 @@ FIELDS = (
     Field("SQUARE", "f", 3, "mean square of input, left, right, over 0.3 s"),
     Field("LOAD", "i", LOADS, "callbacks by load"),
     Field("VALUES", "f", PARAMETERS, "present values of the parameters of the graph that is heard"),
+    Field("SHOWN", "f", SHOWN, "present values of the states that its blocks show"),
     # Queues
     Field("EVENTS_HEAD", "i", 1, "front to audio: entries ever written"),
     Field("EVENTS_TAIL", "i", 1, "front to audio: entries ever read"),

@@ -20,8 +20,8 @@ DEAD = 26  # 1: the graph is not run until a fresh one comes
 METERS = 32  # doubles: three peaks, then three mean squares
 SIZE = 40
 
-KERNEL, PARAMETERS, STATE, MEMORY, NUMBER, COUNT, FIRST_LOG = range(7)
-GRAPH_WORDS = 8
+KERNEL, PARAMETERS, STATE, MEMORY, NUMBER, COUNT, FIRST_LOG, SHOWN, SHOWN_COUNT = range(9)
+GRAPH_WORDS = 9
 
 CHUNK = 256
 """Most frames a graph is given at a time; longer callbacks go in several chunks."""
