@@ -20,34 +20,38 @@ def prepare(drive_db, rate):
     return 10.0 ** (drive_db / 20.0)
 
 
-@inlined
 def hard_average(a, b):
-    """Average of min(1, max(−1, v)) over v from *a* to *b*."""
-    low, high = min(a, b), max(a, b)
-    inside_low, inside_high = min(max(low, -1.0), 1.0), min(max(high, -1.0), 1.0)
-    above = max(high - max(low, 1.0), 0.0)
-    below = max(min(high, -1.0) - low, 0.0)
+    """Average of min(1, max(−1, v)) over v from *a* to *b*: the area above, the area below, and what lies between."""
+    low, high = a.least(b), a.most(b)
+    inside_low, inside_high = low.most(-1.0).least(1.0), high.most(-1.0).least(1.0)
+    above, below = (high - low.most(1.0)).most(0.0), (high.least(-1.0) - low).most(0.0)
     area = above - below + (inside_high - inside_low) * (inside_high + inside_low) * 0.5
-    return area / (high - low) if high > low else inside_high
+    return area.over(high - low, inside_high)
 
 
-@inlined
-def tick_hard_2(x, drive, last, a0, a1):
+def hard_2(x, drive, last, a0, a1):
     v = x * drive
-    middle = last + (v - last) * 0.5
-    b0, b1 = hard_average(last, middle), hard_average(middle, v)
-    return (a0 + 3.0 * (a1 + b0) + b1) * 0.125, v, b0, b1
+    before = v.after(last)
+    middle = before + (v - before) * 0.5
+    b0, b1 = hard_average(before, middle), hard_average(middle, v)
+    y = (b0.after(a0) + 3.0 * (b1.after(a1) + b0) + b1) * 0.125
+    return y, v.last(), b0.last(), b1.last()
 
 
-@inlined
-def tick_hard_4(x, drive, last, a0, a1, a2, a3):
+def hard_4(x, drive, last, a0, a1, a2, a3):
     v = x * drive
-    step = (v - last) * 0.25
-    p, q, r = last + step, last + 2.0 * step, v - step
-    b0, b1 = hard_average(last, p), hard_average(p, q)
-    b2, b3 = hard_average(q, r), hard_average(r, v)
-    y = (a0 + b3 + 3.0 * (a1 + b2) + 5.0 * (a2 + b1) + 7.0 * (a3 + b0)) * 0.03125
-    return y, v, b0, b1, b2, b3
+    before = v.after(last)
+    step = (v - before) * 0.25
+    p, q, r = before + step, before + 2.0 * step, v - step
+    b0, b1, b2, b3 = (hard_average(*ends) for ends in ((before, p), (p, q), (q, r), (r, v)))
+    return weighted_4(b0, b1, b2, b3, a0, a1, a2, a3), v.last(), b0.last(), b1.last(), b2.last(), b3.last()
+
+
+def weighted_4(b0, b1, b2, b3, a0, a1, a2, a3):
+    """Four averages and the four before them, weighted 1-3-5-7-7-5-3-1."""
+    outer = b0.after(a0) + b3 + 3.0 * (b1.after(a1) + b2)
+    inner = 5.0 * (b2.after(a2) + b1) + 7.0 * (b3.after(a3) + b0)
+    return (outer + inner) * 0.03125
 
 
 def two_averages(a, root_a, b, root_b, c, root_c):
@@ -75,12 +79,8 @@ def smooth_4(x, drive, last, root, a0, a1, a2, a3):
     root_p, root_q, root_r, root_v = ((u * u + 1.0).sqrt() for u in (p, q, r, v))
     b0, b1 = two_averages(before, root_v.after(root), p, root_p, q, root_q)
     b2, b3 = two_averages(q, root_q, r, root_r, v, root_v)
-    outer, inner = b0.after(a0) + b3 + 3.0 * (b1.after(a1) + b2), 5.0 * (b2.after(a2) + b1) + 7.0 * (b3.after(a3) + b0)
-    return (outer + inner) * 0.03125, v.last(), root_v.last(), b0.last(), b1.last(), b2.last(), b3.last()
-
-
-tick_smooth_2, sweep_smooth_2 = both_ways(smooth_2)
-tick_smooth_4, sweep_smooth_4 = both_ways(smooth_4)
+    y = weighted_4(b0, b1, b2, b3, a0, a1, a2, a3)
+    return y, v.last(), root_v.last(), b0.last(), b1.last(), b2.last(), b3.last()
 
 
 LITTLE, MUCH, MOST = 7, 16, 32  # effective orders: they lead to 4, 8 and 16 times oversampling at 48 kHz
@@ -102,9 +102,13 @@ def _bandwidth(setting, inputs):
     return n * max(inputs.values())
 
 
+tick_hard_2, sweep_hard_2 = both_ways(hard_2)
+tick_hard_4, sweep_hard_4 = both_ways(hard_4)
+tick_smooth_2, sweep_smooth_2 = both_ways(smooth_2)
+tick_smooth_4, sweep_smooth_4 = both_ways(smooth_4)
 _WAYS = {
-    ("hard", "stage"): (tick_hard_2, None),
-    ("hard", "studio"): (tick_hard_4, None),
+    ("hard", "stage"): (tick_hard_2, sweep_hard_2),
+    ("hard", "studio"): (tick_hard_4, sweep_hard_4),
     ("smooth", "stage"): (tick_smooth_2, sweep_smooth_2),
     ("smooth", "studio"): (tick_smooth_4, sweep_smooth_4),
 }

@@ -83,6 +83,24 @@ class Lanes:
         function = self.builder.module.globals.get(name) or ir.Function(self.builder.module, kind, name)
         return Lanes(self.builder, self.builder.call(function, [self.value]), self.width)
 
+    def _selected(self, order, other, first, second):
+        """*first* where this is in *order* (as "<") to *other*, else *second*."""
+        chosen = self._with(lambda a, b: self.builder.fcmp_ordered(order, a, b), other)
+        pair = (v.value if isinstance(v, Lanes) else self._everywhere(ir.Constant(_DOUBLE, v)) for v in (first, second))
+        return Lanes(self.builder, self.builder.select(chosen.value, *pair), self.width)
+
+    def least(self, other):
+        """The smaller of each and *other*."""
+        return self._selected("<", other, self, other)
+
+    def most(self, other):
+        """The greater of each and *other*."""
+        return self._selected(">", other, self, other)
+
+    def over(self, divisor, otherwise):
+        """Each divided by *divisor* where that is above 0, else *otherwise*."""
+        return divisor._selected(">", 0.0, self / divisor, otherwise)
+
     def after(self, last):
         """The sample before each; *last* came before the first."""
         if self.width == 1:
@@ -124,6 +142,18 @@ class Number(float):
     def sqrt(self):
         """The square root."""
         return Number(sqrt(self))
+
+    def least(self, other):
+        """The smaller of this and *other*."""
+        return self if self < other else Number(other)
+
+    def most(self, other):
+        """The greater of this and *other*."""
+        return self if self > other else Number(other)
+
+    def over(self, divisor, otherwise):
+        """This divided by *divisor* where that is above 0, else *otherwise*."""
+        return self / divisor if divisor > 0.0 else otherwise
 
     def after(self, last):
         """The sample before: *last*."""

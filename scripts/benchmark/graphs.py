@@ -92,7 +92,7 @@ class PlainC:
 
     def __init__(self, name, library):
         self.graph, self.repeat = getattr(library, name), library.repeat
-        self.repeat.argtypes = [ctypes.c_void_p] * 3 + [ctypes.c_long] * 2 + [ctypes.c_void_p] * 2
+        self.repeat.argtypes = [ctypes.c_void_p] * 3 + [ctypes.c_long] + [ctypes.c_void_p] * 2
         self.state, self.numbers = ctypes.create_string_buffer(library.state_size()), numbers()
         library.reset(self.state)
 
@@ -100,7 +100,7 @@ class PlainC:
         out = outputs(len(guitar))
         blocks = len(guitar) // BLOCK
         self.repeat(
-            self.graph, guitar.ctypes.data, out.ctypes.data, BLOCK, blocks,
+            self.graph, guitar.ctypes.data, out.ctypes.data, blocks,
             ctypes.addressof(self.state), self.numbers.ctypes.data,
         )  # fmt: skip
         return out[:, 0]
