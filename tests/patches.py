@@ -9,6 +9,11 @@ import soundfile
 
 import rtfx
 from rtfx.blocks.table import find
+from rtfx.patch.song import kind_of_file
+
+ROOT = Path(__file__).parents[1] / "presets"
+PRESETS = [path for path in sorted(ROOT.rglob("*.toml")) if kind_of_file(path) == "patch"]
+"""All patches that ship."""
 
 HEAD = 'name = "test"\nabout = "for a test"\n'
 
@@ -20,6 +25,11 @@ def response_file(taps=3000, channels=2, rate=48_000):
     sound = np.random.default_rng(2).standard_normal((taps, channels)) * np.exp(-6 * np.arange(taps) / taps)[:, None]
     soundfile.write(path, sound, rate, subtype="DOUBLE")
     return str(path)
+
+
+def preset(name):
+    """Return the path of the preset called *name*."""
+    return next(path for path in PRESETS if path.stem == name)
 
 
 def one(kind, *, wires=("x",), **parameters):

@@ -3,18 +3,17 @@
 import json
 import subprocess
 import sys
-from pathlib import Path
 
 import numpy as np
 import pytest
 import soundfile
+from patches import preset
 from rig.program import Program
 
 import rtfx
 from rtfx.blocks.table import names
 
-PRESETS = Path(__file__).parents[2] / "presets"
-PRESET = PRESETS / "fifth-above.toml"
+PRESET = preset("fifth-above")
 
 
 def run(*arguments):
@@ -60,7 +59,7 @@ def test_bad_moves_are_refused_with_their_line(tmp_path, noise):
 
 
 def test_check_gives_its_facts_as_json():
-    facts = json.loads(run("check", PRESETS / "driven-bell.toml", "--json").stdout)
+    facts = json.loads(run("check", preset("driven-bell"), "--json").stdout)
     assert facts["regions"][0]["factor"] == 8
     assert facts["delay_ms"] <= 1.0
     assert {row["block"] for row in facts["order"]} >= {"shape", "tone", "product"}

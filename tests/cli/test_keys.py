@@ -7,11 +7,11 @@ import select
 import subprocess
 import sys
 import time
-from pathlib import Path
 
 import pytest
+from patches import preset
 
-PRESET = str(Path(__file__).parents[2] / "presets" / "fifth-above.toml")
+PRESET = str(preset("fifth-above"))
 ESCAPES = re.compile(r"\x1b\[[0-9;?]*[A-Za-z]")
 
 

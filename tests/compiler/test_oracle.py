@@ -3,14 +3,13 @@
 import os
 import subprocess
 import sys
-from pathlib import Path
 
 import numpy as np
 import pytest
+from patches import PRESETS
 
 import rtfx
 
-PRESETS = sorted((Path(__file__).parents[2] / "presets").glob("*.toml"))
 FRAMES = 400
 BOUND = 1e-9  # the C library's and Python's functions may differ in the last bit; loops add that up
 RUN = """

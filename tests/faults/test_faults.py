@@ -4,15 +4,15 @@ import os
 import signal
 import time
 import tomllib
-from pathlib import Path
 
 import psutil
 import pytest
 import soundfile
+from patches import preset
 from rig.program import Program
 from rig.server import JackServer
 
-PRESET = str(Path(__file__).parents[2] / "presets" / "fifth-above.toml")
+PRESET = str(preset("fifth-above"))
 pytestmark = pytest.mark.faults
 
 

@@ -1,16 +1,15 @@
 """`rtfx play` on a real JACK server: what comes out is what `rtfx.render` gives, bit for bit."""
 
-from pathlib import Path
-
 import numpy as np
 import pytest
+from patches import preset
 from rig.client import Rig
 from rig.program import Program
 from rig.server import JackServer
 
 import rtfx
 
-PRESET = Path(__file__).parents[2] / "presets" / "octave-over.toml"
+PRESET = preset("octave-over")
 SETTLE = 12_000  # frames of silence first: the ramp is over and the graph has heard nothing but zeros
 
 

@@ -2,18 +2,17 @@
 
 import json
 import time
-from pathlib import Path
 
 import numpy as np
 import pytest
 import soundfile
+from patches import preset
 from rig.client import Rig
 from rig.program import Program
 from rig.server import JackServer
 
 import rtfx
 
-PRESETS = Path(__file__).parents[2] / "presets"
 RATE = 48_000
 pytestmark = pytest.mark.live
 
@@ -26,7 +25,7 @@ def playing(server, patch, *more, **environment):
 @pytest.mark.parametrize("name", ["driven-bell", "echo-tangle", "iron-gate", "two-sides"])
 def test_take_and_capture_are_the_render_of_the_dry_recording(name, tmp_path):
     feed = (0.05 * np.random.default_rng(4).standard_normal(RATE)).astype(np.float32)
-    patch = PRESETS / f"{name}.toml"
+    patch = preset(name)
     recorded = {"XDG_DATA_HOME": str(tmp_path)}
     with JackServer(64) as server, Rig(server) as rig, playing(server, patch, "--record", **recorded) as program:
         program.until(lambda f: f.get("gain") == 1.0)
@@ -66,7 +65,7 @@ def test_twenty_swaps_at_full_level_leave_no_click(tmp_path):
 
 
 def test_status_line_says_what_there_is_to_know():
-    with JackServer(128) as server, Rig(server) as rig, playing(server, PRESETS / "two-sides.toml") as program:
+    with JackServer(128) as server, Rig(server) as rig, playing(server, preset("two-sides")) as program:
         facts = program.until(lambda f: f.get("gain") == 1.0)
         rig.play(np.full(RATE, 0.25, np.float32), wheel=True)
         facts = program.until(lambda f: f.get("seconds", 0) > facts["seconds"] + 1)
@@ -87,4 +86,4 @@ def test_a_rate_that_the_server_refuses_is_said_with_the_way_out():
 
 
 def playing_on_system(server, *more):
-    return Program(str(PRESETS / "two-sides.toml"), "--device", "system", *more, env=server.env)
+    return Program(str(preset("two-sides")), "--device", "system", *more, env=server.env)

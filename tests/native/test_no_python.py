@@ -2,17 +2,15 @@
 
 import re
 import sys
-from pathlib import Path
 
 import pytest
-from patches import one
+from patches import PRESETS, one
 
 import rtfx
 from rtfx.blocks.table import find, names
 from rtfx.engine.native import callback
 
 pytestmark = pytest.mark.usefixtures("fresh_cache")
-PRESETS = sorted((Path(__file__).parents[2] / "presets").glob("*.toml"))
 
 
 @pytest.fixture

@@ -1,15 +1,13 @@
 """The shipped patches: level with each other, quick, and safe."""
 
-from pathlib import Path
-
 import numpy as np
 import pyloudnorm
 import pytest
+from patches import PRESETS
 
 import rtfx
 from rtfx.devices.guitar import demo_guitar
 
-PRESETS = sorted((Path(__file__).parents[2] / "presets").glob("*.toml"))
 TARGET_LUFS = -24.0
 
 
