@@ -34,10 +34,12 @@ def preset(name):
 
 def one(kind, *, wires=("x",), **parameters):
     """Return a patch of a single block of *kind*, the guitar on all its *wires*."""
+    outputs = find(kind).outputs
     parameters = {f.name: response_file() for f in find(kind).files} | parameters
     lines = [f'kind = "{kind}"', *(f'{w} = "input"' for w in wires)]
     lines += [f"{k} = {v!r}".replace("'", '"') for k, v in parameters.items()]
-    return rtfx.loads(HEAD + "[blocks.only]\n" + "\n".join(lines) + '\n[output]\nfrom = "only"\n')
+    end = 'from = "only"' if len(outputs) == 1 else f'left = "only.{outputs[0]}"\nright = "only.{outputs[1]}"'
+    return rtfx.loads(HEAD + "[blocks.only]\n" + "\n".join(lines) + f"\n[output]\n{end}\n")
 
 
 def text(body):

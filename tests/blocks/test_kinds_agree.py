@@ -9,8 +9,9 @@ from rtfx.blocks import table
 from tests.blocks.harness import native_loop, run
 
 KINDS = (
-    "add", "amplitude-modulate", "bandpass", "dc-block", "delay", "envelope", "highpass", "limiter",
-    "lowpass", "mix", "noise-gate", "notch", "pan", "polynomial", "square",
+    "add", "amplitude-modulate", "bandpass", "compressor", "dc-block", "delay", "envelope", "frequency-shift",
+    "highpass", "limiter", "lowpass", "mix", "noise-gate", "notch", "octave-divider", "pan", "polynomial", "reverb",
+    "square", "tremolo",
 )  # fmt: skip
 FRAMES = 3000
 
