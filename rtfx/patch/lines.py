@@ -127,13 +127,16 @@ def _joined(base: Path, key: list[str]) -> Path:
 
 
 def key_places(text: str) -> Iterator[tuple[Path, int]]:
-    """Yield the path and the line (from 1) of every header, key and list element of *text*, in its order."""
+    """Yield the path and the line (from 1) of every header, key and list element of *text*, in its order.
+
+    A path longer than `DEEPEST` may be cut off.
+    """
     walk, line = _Walk(), 1
     for match in _TOKEN.finditer(text):
         kind = match.lastgroup or ""
         if kind != "comment":
             found = walk.step(kind, match.group(), line)
-            if found is not None and 0 < len(found[0]) <= DEEPEST:
+            if found is not None and found[0]:
                 yield found
         line += match.group().count("\n")
 
@@ -142,7 +145,7 @@ def key_lines(text: str) -> dict[Path, int]:
     """Return the line (from 1) on which every table, key and list element of *text* is first named."""
     lines: dict[Path, int] = {}
     for path, line in key_places(text):
-        for length in range(1, len(path) + 1):
+        for length in range(1, min(len(path), DEEPEST) + 1):
             lines.setdefault(path[:length], line)
     return lines
 
@@ -159,6 +162,8 @@ def given_twice(text: str) -> tuple[Path, int, int] | None:
     """Return the first key or header of *text* that comes a second time: its path, that line, and its first line."""
     first: dict[Path, int] = {}
     for path, line in key_places(text):
+        if len(path) > DEEPEST:  # may be cut off, and then stand for several
+            continue
         if isinstance(path[-1], str) and path in first:
             return path, line, first[path]
         first[path] = line

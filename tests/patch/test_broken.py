@@ -8,19 +8,25 @@ from good_patch import GOOD
 
 import rtfx
 
+FOLLOWING = '{ base = "E4 -14c", add = "wobble", depth = "30 c" }'
+
 # What is put in place of what, the line of the fault, its block, and words of its message.
 BROKEN = {
     # The head
     "no name": ('name = "Good"\n', "", 0, "", "'name' is missing; wanted a text"),
+    "no about": ('about = """\nAll is [well], isn\'t it? # """\n', "", 0, "", "'about' is missing; wanted a text"),
     "empty name": ('"Good"', '" "', 1, "", "name = ' '; wanted a text"),
     "about is a number": ('about = """\nAll is [well], isn\'t it? # """', "about = 3\n", 2, "", "about = 3; wanted a"),
     "unknown key": ("tempo = 100", "tempi = 100", 4, "", "unknown key 'tempi'. Did you mean 'tempo'?"),
     "key over two lines": ("tempo = 100", '"te\\nmpo" = 100', 4, "", r"unknown key 'te\nmpo'. Did you mean 'tempo'?"),
+    "unknown key of many names": ("tempo = 100", "a.b.c.d.e.f.g = 1", 4, "", "unknown key 'a'. Allowed: name, about"),
+    "tempo too slow": ("tempo = 100", "tempo = 19.9", 4, "", "tempo = 19.9; wanted a number from 20 to 400"),
     "tempo too fast": ("tempo = 100", "tempo = 1000", 4, "", "tempo = 1000; wanted a number from 20 to 400"),
     "tempo is true": ("tempo = 100", "tempo = true", 4, "", "tempo = true; wanted a number"),
     "tempo is not finite": ("tempo = 100", "tempo = nan", 4, "", "tempo = nan; wanted a number"),
     "tempo is huge": ("tempo = 100", "tempo = 1" + 400 * "0", 4, "", "wanted a number from 20 to 400"),
     "reference is a text": ("reference = 440", 'reference = "A4"', 5, "", "reference = 'A4'; wanted a number"),
+    "reference too high": ("reference = 440", "reference = 501", 5, "", "reference = 501; wanted a number from 380 to"),
     "reference too low": ("reference = 440", "reference = 44", 5, "", "wanted a number from 380 to 500"),
     "blocks is a text": ("[blocks.", "[x.", 7, "", "unknown key 'x'. Allowed: name, about, tempo,"),
     # TOML itself
@@ -92,6 +98,20 @@ BROKEN = {
     "following too far": ('"30 c"', '"80 oct"', 10, "tone", "pitch: depth = '80 oct'; wanted -64 to 64 octaves"),
     "following from too high": ('"E4 -14c"', '"30 kHz"', 10, "tone", "pitch: base = 30 kHz is above 12 kHz. Lower it"),
     "following with a typo": ("base =", "bass =", 10, "tone", "unknown key of pitch 'bass'. Did you mean 'base'?"),
+    "ratio too high": (FOLLOWING, '{ base = "late", ratio = "300/2" }', 10, "tone",
+        "pitch: ratio = 300/2 is above 64. Lower it to 64 or less."),
+    "ratio too low": (FOLLOWING, '{ base = "late", ratio = 0 }', 10, "tone",
+        "pitch: ratio = 0 is below 0.015625. Raise it to 0.015625 or more."),
+    "ratio is true": (FOLLOWING, '{ base = "late", ratio = true }', 10, "tone",
+        "pitch: ratio = true; wanted a ratio"),
+    "ratio of nothing": (FOLLOWING, '{ base = "late", ratio = "3/0" }', 10, "tone",
+        "pitch: ratio = '3/0'; wanted a ratio"),
+    "ratio of a note": (FOLLOWING, '{ base = "A4", ratio = "3/2" }', 10, "tone",
+        "pitch: base = 'A4': no such block."),
+    "ratio of a number": (FOLLOWING, '{ base = 440, ratio = "3/2" }', 10, "tone",
+        "pitch: base = 440; wanted the name of a block in quotes"),
+    "depth is not finite": ('"30 c"', "nan", 10, "tone", "pitch: depth = nan; wanted octaves"),
+    "depth is true": ('"30 c"', "true", 10, "tone", "pitch: depth = true; wanted octaves"),
     # The output
     "no output": ('[output]\nleft = "safe"\nright = "place.right"\n', "", 0, "", "[output] says nothing; wanted from"),
     "half an output": ('right = "place.right"\n', "", 46, "", "[output] has 'left'; wanted from"),
@@ -115,6 +135,9 @@ BROKEN = {
     "ladder is a text": ("[-10, -6]", '"-6 dB"', 55, "safe", "ladder = '-6 dB'; wanted a list of values"),
     "ladder above its ends": ('"E4", "A4"', '"E4", "B5"', 53, "tone", "'B5' lies outside from … to. Allowed: 220 to"),
     "ladder below its ends": ("[-10, -6]", "[-10, -12]", 55, "safe", "-12 lies outside from … to. Allowed: -10 to"),
+    "step of a ladder is true": ("[-10, -6]", "[true]", 55, "safe", "ceiling: ladder = true; wanted a level"),
+    "step of a ladder is not finite": ("[-10, -6]", "[-10, nan]", 55, "safe", "ladder = nan; wanted a level"),
+    "step of a ladder is a list": ("[-10, -6]", "[[-6]]", 55, "safe", "ladder = a list; wanted a level"),
     "step of a ladder is no note": ('"E4", "A4"', '"E4", "H4"', 53, "tone", "pitch: ladder = 'H4'; wanted a note"),
 }  # fmt: skip
 
@@ -187,7 +210,7 @@ def test_a_fault_reads_as_file_line_block_and_the_way_out():
     assert str(caught.value) == f"presets/bell.toml:14: block 'wobble': {way_out}"
 
 
-@pytest.mark.parametrize("name", ["unknown kind", "not TOML", "loop", "dangling wire"])
+@pytest.mark.parametrize("name", ["unknown kind", "not TOML", "loop", "dangling wire", "too high", "key twice"])
 def test_command_line_says_it_without_a_traceback(name, tmp_path):
     path = tmp_path / "bad.toml"
     path.write_text(broken(name), encoding="utf-8")

@@ -42,6 +42,21 @@ def test_exchanged_words_are_read_or_refused(changes):
     assert read_or_refused("".join(words))
 
 
+@settings(max_examples=200, deadline=None)
+@given(
+    st.lists(st.tuples(st.sampled_from(["drop", "double", "move"]), *2 * [st.integers(0, 200)]), min_size=1, max_size=6)
+)
+def test_shuffled_lines_are_read_or_refused(changes):
+    lines = GOOD.split("\n")
+    for what, at, to in changes:
+        line = lines[at % len(lines)]
+        if what != "double" and len(lines) > 1:
+            lines.remove(line)
+        if what != "drop":
+            lines.insert(to % (len(lines) + 1), line)
+    assert read_or_refused("\n".join(lines))
+
+
 @settings(max_examples=100, deadline=None)
 @given(st.text())
 def test_any_text_is_read_or_refused(text):

@@ -58,6 +58,11 @@ def test_a_parameter_that_follows_keeps_its_base(good):
     assert good.block("tone").follows == {"pitch": Follow(Wire("wobble"), 30 / 1200)}
 
 
+def test_a_ratio_makes_the_base_a_block():
+    text = GOOD.replace('{ base = "E4 -14c", add = "wobble", depth = "30 c" }', '{ base = "wobble", ratio = "3/2" }')
+    assert rtfx.loads(text).block("tone").follows == {"pitch": Follow(base=Wire("wobble"), ratio=1.5)}
+
+
 def test_a_following_table_may_stand_by_itself(good):
     text = GOOD.replace('pitch = { base = "E4 -14c", add = "wobble", depth = "30 c" }', "")
     text += '[blocks.tone.pitch]\nbase = "E4 -14c"\nadd = "wobble"\ndepth = "30 c"\n'
@@ -141,6 +146,11 @@ def test_set_value_changes_a_choice(good):
 
 def test_set_value_keeps_what_follows(good):
     assert set_value(good, "tone.pitch", "A4").block("tone").follows == good.block("tone").follows
+
+
+def test_set_value_leaves_the_patch_it_was_given(good):
+    set_value(good, "soft.amount", 0.25)
+    assert good.block("soft").values["amount"] == 0.5
 
 
 @pytest.mark.parametrize(
